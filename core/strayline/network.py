@@ -1,6 +1,7 @@
 """The circuit as data: branches between named nodes, the windows of the devices that watch them, and the rules a circuit must keep.
 
-Everything here is frozen. A change is a new Network made by `with_branches`, `without_branches` or `replaced`; a Network is its own cache key.
+Everything here is frozen. A change is a new Network made by `with_branches`, `without_branches` or `replaced`, and a Network is its own
+cache key.
 """
 
 from __future__ import annotations
@@ -19,7 +20,8 @@ KINDS = frozenset({"source", "line", "neutral", "protective", "load", "filter", 
 class Branch:
     """Two-terminal element obeying V(to) = V(from) + emf - impedance * I, with I counted from `from_node` to `to_node`.
 
-    `impedance` in ohms at the network's frequency, R + jX with X < 0 for a capacitor; `emf` in volts RMS; `owner` is the part it stands for.
+    `impedance` in ohms at the network's frequency, R + jX with X < 0 for a capacitor; `emf` in volts RMS; `owner` is the part it
+    stands for.
     """
 
     id: str
@@ -106,7 +108,7 @@ def nodes(network: Network) -> tuple[str, ...]:
     return tuple(seen)
 
 
-# Edits -----------------------------------------------------------------------------------------------------------------------------------
+# Edits
 
 
 def with_branches(network: Network, *branches: Branch) -> Network:
@@ -153,7 +155,7 @@ def replaced(network: Network, branch: Branch) -> Network:
     )
 
 
-# Consistency rules: each raises NetworkError with the name, the rule and the value ---------------------------------------------------------
+# Consistency rules: each raises NetworkError with the name, the rule and the value
 
 
 def _broken(rule: str, name: str, value: object = None) -> NetworkError:
