@@ -16,7 +16,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator, Sequence
+    from collections.abc import Iterator
 
 ROOT = Path(__file__).resolve().parent.parent
 HIDDEN = ROOT / ".strayline"
@@ -47,7 +47,7 @@ def environment(name: str, lock: Path) -> Path:
                 ) from error
             fetch = ["-m", "pip", "--disable-pip-version-check", "install", "--quiet", "--require-hashes", "-r", str(lock)]
             if run(python, *fetch):
-                raise MissingToolError(f"The packages of {lock.relative_to(ROOT)} could not be fetched; connect to the network and try again.")
+                raise _not_fetched(lock)
             _write_stamp(folder, stamp)
     return python
 
@@ -57,10 +57,10 @@ def node_tools(package: Path) -> Path:
 
     Raises MissingToolError without npm, and when a package cannot be fetched.
     """
-    folder = HIDDEN / "node"
+    folder = HIDDEN / f"{package.name}_node"
     manifests = [package / "package.json", package / "package-lock.json"]
     stamp = _stamp(folder, b"".join(path.read_bytes() for path in manifests))
-    with _turn("node"):
+    with _turn(folder.name):
         if not _fresh(folder, stamp):
             _say(f"making the environment {folder.relative_to(ROOT)} (once)")
             shutil.rmtree(folder, ignore_errors=True)
@@ -68,9 +68,7 @@ def node_tools(package: Path) -> Path:
             for path in manifests:
                 shutil.copy2(path, folder)
             if run(npm(), "ci", "--ignore-scripts", "--no-audit", "--no-fund", "--silent", cwd=folder):
-                raise MissingToolError(
-                    f"The packages of {manifests[1].relative_to(ROOT)} could not be fetched; connect to the network and try again."
-                )
+                raise _not_fetched(manifests[1])
             _write_stamp(folder, stamp)
     return folder
 
@@ -132,6 +130,10 @@ def _turn(name: str) -> Iterator[None]:
 
             fcntl.flock(handle, fcntl.LOCK_EX)
         yield
+
+
+def _not_fetched(lock: Path) -> MissingToolError:
+    return MissingToolError(f"The packages of {lock.relative_to(ROOT)} could not be fetched; connect to the network and try again.")
 
 
 def _say(line: str) -> None:

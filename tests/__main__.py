@@ -10,6 +10,10 @@ import subprocess
 import sys
 import time
 from pathlib import Path
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 HERE = Path(__file__).resolve().parent
 ROOT = HERE.parent
@@ -34,8 +38,8 @@ def main(arguments: list[str]) -> int:
     pytest = [python, "-m", "pytest", *([] if mode == "full" else ["-m", "not full"]), *arguments]
     rows = [_row("pytest", lambda: bootstrap.run(*pytest, cwd=ROOT, env=_environment()))]
     if not arguments:
-        rows += [_row(name, lambda command=command: _quietly(command)) for name, command in _python_checks(python).items()]
-        rows += [_row(name, lambda script=script: _quietly(_node_command(script))) for name, script in NODE_CHECKS.items()]
+        rows += [_row(name, lambda command=command: _quietly(command, ROOT)) for name, command in _python_checks(python).items()]
+        rows += [_row(name, lambda script=script: _quietly(_node_command(script), ROOT / "webui")) for name, script in NODE_CHECKS.items()]
     print("\nsummary")
     for name, verdict, seconds in rows:
         print(f"  {name:<16} {verdict:<28} {seconds:6.1f} s")
@@ -53,22 +57,23 @@ def _python_checks(python: Path) -> dict[str, list[str | Path]]:
     }
 
 
-# Name -> the script inside node_modules and its arguments.
+# Name -> the script inside node_modules and its arguments; run in webui/, where their settings are.
 NODE_CHECKS: dict[str, list[str]] = {
-    "biome": ["@biomejs/biome/bin/biome", "ci", "--config-path=webui", "webui", "service_worker"],
-    "tsc": ["typescript/bin/tsc", "--project", "webui/tsconfig.json"],
+    "biome": ["@biomejs/biome/bin/biome", "ci", ".", "../service_worker"],
+    "tsc page": ["typescript/bin/tsc", "--project", "."],
+    "tsc workers": ["typescript/bin/tsc", "--project", "../service_worker"],
 }
 
 
 def _node_command(script: list[str]) -> list[str | Path]:
-    modules = bootstrap.node_tools(ROOT / "webui") / "node_modules"
+    modules = bootstrap.node_tools(HERE) / "node_modules"
     return [bootstrap.node(), modules / script[0], *script[1:]]
 
 
-def _row(name: str, check: object) -> tuple[str, str, float]:
+def _row(name: str, check: Callable[[], int]) -> tuple[str, str, float]:
     started = time.monotonic()
     try:
-        status = check()  # type: ignore[operator]
+        status = check()
         verdict = "passed" if status == 0 else f"FAILED (exit status {status})"
     except bootstrap.MissingToolError as error:
         print(f"{name}: {error}", file=sys.stderr)
@@ -76,14 +81,12 @@ def _row(name: str, check: object) -> tuple[str, str, float]:
     return name, verdict, time.monotonic() - started
 
 
-def _quietly(command: list[str | Path]) -> int:
+def _quietly(command: list[str | Path], folder: Path) -> int:
     """Run a check and show what it says only when it fails."""
-    done = subprocess.run(
-        [str(part) for part in command], cwd=ROOT, env=_environment(), check=False, stdout=subprocess.PIPE, stderr=subprocess.STDOUT
-    )
+    parts = [str(part) for part in command]
+    done = subprocess.run(parts, cwd=folder, env=_environment(), check=False, stdout=subprocess.PIPE, stderr=subprocess.STDOUT)
     if done.returncode:
-        print(f"\n{Path(command[-1]).name}: {' '.join(str(part) for part in command)}")
-        sys.stdout.flush()
+        print(f"\n$ {' '.join(parts)}", flush=True)
         sys.stdout.buffer.write(done.stdout)
         sys.stdout.flush()
     return done.returncode
