@@ -8,10 +8,13 @@ from __future__ import annotations
 
 import cmath
 import math
-from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
 from strayline.errors import NetworkError
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Iterable
 
 KINDS = frozenset({"source", "line", "neutral", "protective", "load", "filter", "leak", "bond", "water", "winding"})
 

@@ -1,0 +1,217 @@
+"""Sparse factors of a complex symmetric matrix whose unknowns are potentials and flows; it knows no circuits.
+
+The matrix is [[Y, B], [Bᵀ, -Z]]: a block Y among the potentials, a block -Z among the flows, and B between them. It is factored as
+L D Lᵀ on dictionaries of rows, in order of least degree, where D holds single numbers and 2 × 2 blocks:
+
+- a potential goes together with the flow of least |Z| that touches it, as one 2 × 2 block, while |Y Z| ≤ |B|². This keeps small
+  impedances as sums of small impedances, and a Z of zero needs no exception;
+- a potential without such a flow goes alone, once its pivot is not small against its row;
+- a flow goes alone only after every potential it touches;
+- what this order cannot finish (it is rare, and small) is ended by complete pivoting, single or 2 × 2, after Bunch and Parlett,
+  "Direct methods for solving symmetric indefinite systems of linear equations", SIAM J. Numer. Anal. 8 (1971) 639-655.
+
+Least degree: Tinney and Walker, "Direct solutions of sparse network equations by optimally ordered triangular factorization", Proc. IEEE
+55 (1967) 1801-1809. No pivot is ever nudged: a matrix without a unique solution raises SingularError.
+"""
+
+from __future__ import annotations
+
+import heapq
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+Row = dict[int, complex]
+
+ROOM_FOR_SINGLE = 0.1  # a single pivot may be this fraction of the largest entry beside it: multipliers stay below ten
+LOST = 1e-14  # a pivot this small against the row it came from is what rounding left of a cancellation, not a number
+PARLETT = 0.6403882032022076  # (1 + sqrt 17) / 8, Bunch and Parlett's bound between single and 2 × 2 pivots
+
+
+class SingularError(Exception):
+    """The rows of the matrix do not determine these unknowns."""
+
+    def __init__(self, unknowns: tuple[int, ...]) -> None:
+        super().__init__(f"unknowns {unknowns} are not determined")
+        self.unknowns = unknowns
+
+
+@dataclass(frozen=True, slots=True)
+class Single:
+    """One eliminated unknown: the inverse of its pivot and its multipliers in the unknowns left."""
+
+    unknown: int
+    inverse: complex
+    multipliers: tuple[tuple[int, complex], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Pair:
+    """Two unknowns eliminated together: the inverse [[p, q], [q, r]] of their block and (unknown, first, second) multipliers."""
+
+    first: int
+    second: int
+    p: complex
+    q: complex
+    r: complex
+    multipliers: tuple[tuple[int, complex, complex], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Triangle:
+    """The factors, in order of elimination, of a matrix of `size` unknowns."""
+
+    size: int
+    steps: tuple[Single | Pair, ...]
+
+    def solve(self, right: Mapping[int, complex]) -> list[complex]:
+        """Values of all unknowns for a right-hand side given by its non-zero entries."""
+        x = [0j] * self.size
+        for unknown, value in right.items():
+            x[unknown] = value
+        for step in self.steps:
+            if isinstance(step, Pair):
+                one, two = x[step.first], x[step.second]
+                if one or two:
+                    for unknown, by_one, by_two in step.multipliers:
+                        x[unknown] -= by_one * one + by_two * two
+                    x[step.first] = step.p * one + step.q * two
+                    x[step.second] = step.q * one + step.r * two
+            elif one := x[step.unknown]:
+                for unknown, by_one in step.multipliers:
+                    x[unknown] -= by_one * one
+                x[step.unknown] = one * step.inverse
+        for step in reversed(self.steps):
+            if isinstance(step, Pair):
+                one, two = x[step.first], x[step.second]
+                for unknown, by_one, by_two in step.multipliers:
+                    value = x[unknown]
+                    one -= by_one * value
+                    two -= by_two * value
+                x[step.first], x[step.second] = one, two
+            else:
+                one = x[step.unknown]
+                for unknown, by_one in step.multipliers:
+                    one -= by_one * x[unknown]
+                x[step.unknown] = one
+        return x
+
+
+def eliminate(rows: list[Row], potentials: int) -> Triangle:
+    """Factor the symmetric matrix held as full `rows` (which it uses up); the first `potentials` unknowns are potentials, the rest flows.
+
+    Every row must hold its diagonal entry, zero or not. Raises SingularError with the unknowns that no equation determines.
+    """
+    scale = [max(map(abs, row.values())) for row in rows]
+    left = set(range(len(rows)))
+    steps: list[Single | Pair] = []
+    queue = [(len(row), unknown) for unknown, row in enumerate(rows)]
+    heapq.heapify(queue)
+    while queue:
+        degree, unknown = heapq.heappop(queue)
+        if unknown not in left or len(rows[unknown]) != degree:
+            continue  # gone, or queued again since with its present degree
+        chosen = _choose(rows, unknown, potentials, scale)
+        if not chosen:
+            continue  # it is queued again when its row changes, and left to complete pivoting if it never does
+        step = _take(rows, chosen)
+        steps.append(step)
+        left.difference_update(chosen)
+        for entry in step.multipliers:
+            heapq.heappush(queue, (len(rows[entry[0]]), entry[0]))
+    while left:
+        chosen = _choose_from_all(rows, left, scale)
+        steps.append(_take(rows, chosen))
+        left.difference_update(chosen)
+    return Triangle(len(rows), tuple(steps))
+
+
+def _choose(rows: list[Row], unknown: int, potentials: int, scale: list[float]) -> tuple[int, ...]:
+    """The pivot that `unknown` leads, itself alone or with a flow; empty when it must wait."""
+    row = rows[unknown]
+    pivot = abs(row[unknown])
+    if unknown < potentials:
+        flow, least = -1, 0.0
+        for other, entry in row.items():
+            if other >= potentials:
+                coupling = abs(entry)
+                ratio = abs(rows[other][other]) / coupling / coupling
+                if flow < 0 or ratio < least:
+                    flow, least = other, ratio
+        if flow >= 0 and pivot * least <= 1:
+            block = row[unknown] * rows[flow][flow] - row[flow] * row[flow]
+            if abs(block) >= ROOM_FOR_SINGLE * abs(row[flow]) ** 2:
+                return unknown, flow
+    elif any(other < potentials for other in row):
+        return ()
+    largest = max((abs(entry) for other, entry in row.items() if other != unknown), default=0.0)
+    if pivot < ROOM_FOR_SINGLE * largest or pivot <= LOST * scale[unknown]:
+        return ()
+    return (unknown,)
+
+
+def _choose_from_all(rows: list[Row], left: set[int], scale: list[float]) -> tuple[int, ...]:
+    """The largest single or 2 × 2 pivot among all that is left."""
+    single, alone = max((abs(rows[unknown][unknown]), -unknown) for unknown in left)
+    beside, one, two = max(
+        ((abs(entry), -unknown, -other) for unknown in left for other, entry in rows[unknown].items() if other > unknown),
+        default=(0.0, 0, 0),
+    )
+    if max(single, beside) <= LOST * max(scale[unknown] for unknown in left):
+        raise SingularError(tuple(sorted(left)))
+    return (-alone,) if single >= PARLETT * beside else (-one, -two)
+
+
+def _take(rows: list[Row], chosen: tuple[int, ...]) -> Single | Pair:
+    """Eliminate the chosen pivot from the rows that are left."""
+    return _take_single(rows, *chosen) if len(chosen) == 1 else _take_pair(rows, *chosen)
+
+
+def _take_single(rows: list[Row], unknown: int) -> Single:
+    row = rows[unknown]
+    inverse = 1 / row.pop(unknown)
+    rows[unknown] = {}
+    multipliers = tuple([(other, entry * inverse) for other, entry in row.items()])
+    for other, _ in multipliers:
+        del rows[other][unknown]
+    for place, (other, by_one) in enumerate(multipliers):
+        target = rows[other]
+        target[other] -= by_one * row[other]
+        for beside, _ in multipliers[place + 1 :]:
+            _put(rows, target, other, beside, target.get(beside, 0j) - by_one * row[beside])
+    return Single(unknown, inverse, multipliers)
+
+
+def _take_pair(rows: list[Row], first: int, second: int) -> Pair:
+    one, two = rows[first], rows[second]
+    rows[first] = rows[second] = {}
+    a, b, c = one.pop(first), one.pop(second), two.pop(second)
+    del two[first]
+    block = a * c - b * b
+    p, q, r = c / block, -b / block, a / block
+    multipliers: list[tuple[int, complex, complex]] = []
+    for other in {**one, **two}:
+        x, y = one.get(other, 0j), two.get(other, 0j)
+        multipliers.append((other, p * x + q * y, q * x + r * y))
+        target = rows[other]
+        target.pop(first, None)
+        target.pop(second, None)
+    for place, (other, by_one, by_two) in enumerate(multipliers):
+        target = rows[other]
+        target[other] -= by_one * one.get(other, 0j) + by_two * two.get(other, 0j)
+        for beside, _, _ in multipliers[place + 1 :]:
+            taken = by_one * one.get(beside, 0j) + by_two * two.get(beside, 0j)
+            _put(rows, target, other, beside, target.get(beside, 0j) - taken)
+    return Pair(first, second, p, q, r, tuple(multipliers))
+
+
+def _put(rows: list[Row], target: Row, row: int, column: int, value: complex) -> None:
+    """Write an entry and its mirror image; an exact zero leaves no entry, so that a closed loop really lets go of its potentials."""
+    if value:
+        target[column] = value
+        rows[column][row] = value
+    elif column in target:
+        del target[column]
+        del rows[column][row]
