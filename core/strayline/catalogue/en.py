@@ -12,7 +12,7 @@ _LOADS_OFF = "Turn off every load aboard. Stop the generator and switch the inve
 _MAIN_OFF = "Turn off the main switch aboard."
 _POST_OFF = "Turn off the breaker on the dock post (pedestal). With two plugs in use, turn off both breakers before you move either."
 _DARK = (_LOADS_OFF, _MAIN_OFF, _POST_OFF)
-_POST_OUT = "Pull every plug of yours out of the dock post."
+_POST_OUT = "Pull every plug of yours out of the dock post. Touch none of its pins."
 _UNPLUG = (_POST_OUT, "Then take the cord off the boat and cover the boat's inlet.")
 _PLUG = ("Connect the boat end of the cord first.", "Then push the plug into the dock post.")
 _POST_ON = "Turn on the breaker on the dock post, once."
@@ -30,7 +30,7 @@ _SOURCES_LOCKED = (
 _PROVE_DEAD = (
     "Prove the meter on a known live source.",
     "Turn on the main switch aboard, so that the meter sees the boat's buses.",
-    "Read AC volts on every pair of conductors. Each must be below 1 V, or stop here.",
+    "Read AC volts on every pin pair of the inlet and from bus to bus. Each must be below 1 V, or stop here.",
     "Prove the meter on the known source once more.",
 )
 
@@ -127,7 +127,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "stop.hot_plug.orders": (
         "Do not pull the plug. Pulling it under load can flash.",
         "Turn off the loads and the main switch aboard.",
-        "Turn off the breaker on the dock post, if you can reach it without touching the hot part.",
+        "Turn off the breaker on the dock post, if you can reach it without touching the hot part. If not, use the emergency shutoff.",
         "Let it cool before anyone touches it.",
         "If there is smoke or fire, get everyone off and call your local emergency number.",
         "Do not use that plug, cord or outlet again. Tell the marina.",
@@ -415,7 +415,10 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "Some stoves and dryers are built for houses, with a strap from neutral to the frame. Aboard, it sends part of "
         "every load's current into the ground (earth). It does so even with that appliance's breaker off."
     ),
-    "cause.frame_strap.tonight": (*_LETHAL_TONIGHT, "If the stove or dryer has a plug, pull it once the boat is unplugged."),
+    "cause.frame_strap.tonight": (
+        *_LETHAL_TONIGHT,
+        "If the stove or dryer has a plug, pull it once the boat is unplugged and the inverter is off.",
+    ),
     "cause.frame_strap.remedy": (
         "A technician takes the strap out and fits a four-wire lead.",
         "The frame stays connected to the ground (earth) wire.",
@@ -498,8 +501,8 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "The boat is unplugged. Please check your outlet and keep people out of the water."
     ),
     "cause.open_ground_with_leak.confirm": (
-        "A technician reads ohms from the cord's ground (earth) pin to the boat's ground bus, cord out and sources locked "
-        "out: no reading confirms it."
+        "A technician reads from the cord's ground (earth) pin to the boat's ground bus, cord out and sources locked out: open on "
+        "ohms, and on the diode range both ways, confirms it."
     ),
     "cause.feeder_accumulation.title": "The leaks of several boats add up on the dock",
     "cause.feeder_accumulation.lead": (
@@ -552,7 +555,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "My boat seems to draw too much at once. I now run fewer loads. Please check that the outlet and breaker do not get hot."
     ),
     "cause.overload.confirm": (
-        "A trained person clamps one line wire in a closed break-out lead: amperes near or over the rating on the handle confirm it."
+        "A technician clamps one line wire in a closed break-out lead: amperes over the rating on the handle confirm it."
     ),
     "cause.nothing_now.title": "No leakage now, with these loads running",
     "cause.nothing_now.lead": (
@@ -686,7 +689,8 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "Turn on one branch breaker and its load.",
         "Wait until it really runs: hot, cold, or humming. Ask yourself: did it run? If not, it does not count.",
         "Turn that load and its breaker off. Go on with the next one.",
-        "If one trips it, turn off the main and that branch. That branch stays off. Go on with the next one.",
+        "If one trips it, turn off the main and that branch. That branch stays off.",
+        "Look again before the dock breaker goes on for the next load: nobody in the water, dry hands, dry feet.",
         "Stop when two loads have tripped it, or when all have run.",
         _DONE,
     ),
@@ -998,60 +1002,44 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "problem.wrong_unit": "Please give it in {unit}.",
     "problem.no_choice": "Choose one of the answers. “I don't know” is one of them.",
     "problem.unknown_choice": "That answer is not in the list. Choose one of these.",
-    # --- fixed labels of the page ---
-    "page.name": "Strayline",
-    "page.about": "Why the shore power trips, and what to do next.",
+    # --- fixed labels of the page: webui/index.html, webui/static_pages.py and webui/page/ name them without "page." ---
+    "page.description": "Why a boat's shore power trips, and which test to do next.",
     "page.skip": "Skip to the question",
+    "page.reach": "Always at hand",
+    "page.stop": "Stop",
+    "page.stop_always": "Always",
+    "page.gate_again": "Start again from the gate",
+    "page.tonight": "Tonight",
+    "page.cautions": "Cautions",
+    "page.return": "Back to the question",
     "page.back": "Back",
-    "page.next": "Next",
+    "page.keep": "Keep my answer",
     "page.undo": "Undo",
     "page.change": "Change",
+    "page.save": "Enter",
     "page.answers": "Answers so far",
-    "page.answers_none": "No answers yet.",
-    "page.answer_kept": "Answer kept. It is used as soon as the engine is ready.",
-    "page.answer_saved": "Saved on this phone.",
-    "page.save_failed": "This phone did not let me save. Keep this page open, or the answers are lost.",
+    "page.answer_kept": "Your answers are kept on this phone.",
+    "page.storage_failed": "This phone did not let me save. Keep this page open, or your answers are lost.",
     "page.why": "Why do you ask?",
-    "page.why_test": "Why this test?",
     "page.ranking": "Likely causes",
-    "page.ranking_none": "The causes are ranked after the first questions.",
+    "page.less_likely": "Less likely",
     "page.numbers": "In numbers",
     "page.for": "Speaks for it",
     "page.against": "Speaks against it",
-    "page.cautions": "Cautions",
-    "page.steps": "Steps",
-    "page.outcome": "What happened?",
-    "page.reading": "Reading",
-    "page.result": "Result",
-    "page.who_fixes": "Who may fix it",
+    "page.repair": "Who may fix it",
     "page.remedy": "What puts it right",
-    "page.confirm": "What would confirm it",
     "page.marina": "Tell the marina",
-    "page.tonight": "Tonight",
-    "page.tonight_case": "For this case",
-    "page.stop": "Stop",
-    "page.stop_pick": "What do you see?",
-    "page.start_gate": "Start again from the gate",
-    "page.fixed": "This is fixed or taken out: go on",
     "page.assumed": "What I assumed",
-    "page.progress": "How sure",
-    "page.close": "Close",
     "page.new_case": "New case",
-    "page.new_case_ask": "Start a new case? The old one stays on this phone.",
-    "page.case_title": "Case of {date}",
-    "page.boot_wait": "The engine is starting. You can answer already.",
-    "page.boot_failed": "The engine did not start. Stop and Tonight still work, and your answers are kept.",
-    "page.boot_cannot": "This browser can't run the engine. Stop and Tonight still work. Try a newer browser.",
-    "page.engine_lost": "The engine stopped. Your answers are kept. Start it again.",
-    "page.thinking": "Working it out …",
-    "page.start_again": "Start again",
+    "page.boot_wait": "The engine is starting",
+    "page.boot_failed": "The engine did not start. Stop and Tonight still work. Your answers are kept. Try a newer browser if this stays.",
+    "page.trouble": "Something went wrong here",
+    "page.start_again": "Start the engine again",
     "page.offline_getting": "Saving for offline use: {done} of {total}",
-    "page.offline_ready": "ready to work offline",
-    "page.offline_failed": "Not all parts are saved yet. Stay online and open this page once more.",
-    "page.offline_none": "This browser can't keep the page for offline use.",
+    "page.offline_ready": "Ready to work offline",
+    "page.offline_never": "This browser can't keep the page for offline use.",
     "page.update_ready": "A new version is here. It starts when all tabs of this page are closed.",
-    "page.privacy": "Your answers stay on this phone. Nothing is sent.",
     "page.notices": "Notices",
-    "page.version": "Version {version}, build {build}",
+    "page.version": "Version",
     "page.no_script": "Scripts are off in this browser. You can still read Stop, Tonight and the cautions.",
 }
