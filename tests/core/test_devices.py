@@ -1,0 +1,221 @@
+"""Devices: bands, soft trip probabilities, overcurrent, and which device opens first."""
+
+from __future__ import annotations
+
+import math
+from itertools import product
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from strayline.devices import (
+    CEILING,
+    DEVICES,
+    FLOOR,
+    MAGNETIC_BANDS,
+    PATTERNS,
+    class_a_longest_break_s,
+    inrush_probability,
+    opening_patterns,
+    operating_band_ma,
+    overcurrent_probability,
+    trip_probability,
+    verdict,
+)
+from strayline.errors import CaseError
+
+WATCHING = [device for device in DEVICES.values() if device.id != "none"]
+POSITIONS = ("feeder", "pedestal", "aboard")
+shares = st.floats(0.0, 1.0)
+residuals_a = st.floats(0.0, 1e4)
+delays = st.sets(st.sampled_from(POSITIONS))
+
+
+@pytest.mark.parametrize(
+    ("id_", "low_ma", "high_ma"), [("class_a", 4, 6), ("gfpe_30", 15, 30), ("rcd_100_s", 50, 100), ("gfpe_100", 50, 100)]
+)
+def test_verdict_at_the_edges(id_: str, low_ma: float, high_ma: float) -> None:
+    """At the non-operating value a device holds, at the operating value it trips, and between the two it may trip."""
+    device = DEVICES[id_]
+    assert verdict(device, low_ma / 1000) == "holds"
+    assert verdict(device, (low_ma + 0.001) / 1000) == "may trip"
+    assert verdict(device, (high_ma - 0.001) / 1000) == "may trip"
+    assert verdict(device, high_ma / 1000) == "trips"
+
+
+@pytest.mark.parametrize("device", [device for device in WATCHING if device.id != "class_a"], ids=lambda device: device.id)
+def test_default_band_is_half_and_whole_rating(device) -> None:
+    """Where nothing else is said a device holds up to half its rating and trips from its rating on."""
+    assert operating_band_ma(device) == (device.rated_ma / 2, device.rated_ma)
+
+
+def test_case_states_the_band() -> None:
+    """A band stated by the case replaces the device's own, in the verdict and in the probability."""
+    device = DEVICES["gfpe_30"]
+    assert verdict(device, 0.020) == "may trip"
+    assert verdict(device, 0.020, non_operating_ma=22) == "holds"
+    assert verdict(device, 0.020, non_operating_ma=10, operating_ma=18) == "trips"
+    assert trip_probability(device, 0.020, non_operating_ma=24) < trip_probability(device, 0.020)
+    assert trip_probability(device, 0.020, operating_ma=18) > trip_probability(device, 0.020)
+
+
+@pytest.mark.parametrize(("low", "high"), [(31.0, None), (0.0, None), (-1.0, 10.0), (20.0, 10.0), (math.nan, None)])
+def test_impossible_band(low: float, high: float | None) -> None:
+    """A band that is not above zero and in order is refused, naming the device and the value."""
+    with pytest.raises(CaseError, match=r"gfpe_30\.non_operating_ma"):
+        verdict(DEVICES["gfpe_30"], 0.01, low, high)
+
+
+@given(residuals_a)
+def test_nothing_watches(residual_a: float) -> None:
+    """Where no device watches the verdict is "unprotected" and a trip stays barely possible, whatever the residual."""
+    assert verdict(DEVICES["none"], residual_a) == "unprotected"
+    assert trip_probability(DEVICES["none"], residual_a, window_siemens=10, grounded_neutral=True) == FLOOR > 0
+
+
+@given(st.sampled_from(WATCHING), residuals_a, residuals_a, st.floats(0, 1e4), st.booleans())
+def test_more_residual_trips_no_less(device, one_a: float, other_a: float, window_siemens: float, detector: bool) -> None:
+    """The trip probability never falls as the residual grows, and is never a hard zero or one."""
+    low, high = (
+        trip_probability(device, amps, window_siemens=window_siemens, grounded_neutral=detector) for amps in sorted((one_a, other_a))
+    )
+    assert 0 < FLOOR <= low <= high <= CEILING < 1
+
+
+@pytest.mark.parametrize("device", WATCHING, ids=lambda device: device.id)
+def test_probability_follows_the_verdict(device) -> None:
+    """Nearly every device obeys its band: it holds at the lower edge, trips at the upper, and is undecided at the geometric middle."""
+    low, high = operating_band_ma(device)
+    assert trip_probability(device, low / 1000) < 0.05
+    assert trip_probability(device, high / 1000) > 0.95
+    assert trip_probability(device, math.sqrt(low * high) / 1000) == pytest.approx((FLOOR + CEILING) / 2, abs=1e-9)
+
+
+def test_thirty_milliampere_devices_as_found() -> None:
+    """A 30 mA device is as likely as not to have tripped between 18 and 23 mA (reports of tested RCDs say 18 to 22 mA)."""
+    assert trip_probability(DEVICES["rcd_30"], 0.018) < 0.5 < trip_probability(DEVICES["rcd_30"], 0.023)
+
+
+def test_grounded_neutral_trips_without_residual() -> None:
+    """A device with the detector opens on a low-resistance loop with no residual at all; one without it does not (UL 943)."""
+    device = DEVICES["class_a"]
+    assert trip_probability(device, 0.0, window_siemens=1 / 0.2, grounded_neutral=True) > 0.95
+    assert trip_probability(device, 0.0, window_siemens=1 / 100, grounded_neutral=True) < 0.01
+    assert trip_probability(device, 0.0, window_siemens=1 / 0.2) == trip_probability(device, 0.0) < 0.01
+
+
+def test_grounded_neutral_middle() -> None:
+    """The detector is undecided at about 2 ohm (value of low confidence), on either side of which it leans the right way."""
+    lower, middle, upper = (trip_probability(DEVICES["class_a"], 0.0, window_siemens=1 / ohm, grounded_neutral=True) for ohm in (1, 2, 4))
+    assert lower > 0.8 > middle > 0.2 > upper
+    assert middle == pytest.approx(0.5, abs=0.01)
+
+
+@given(st.sampled_from(WATCHING), residuals_a, st.floats(0, 1e4), st.floats(0, 1e4))
+def test_lower_loop_resistance_trips_no_less(device, residual_a: float, one: float, other: float) -> None:
+    """A better conducting loop never lowers the trip probability, and no loop adds nothing."""
+    none, low, high = (trip_probability(device, residual_a, window_siemens=g, grounded_neutral=True) for g in sorted((0.0, one, other)))
+    assert none == trip_probability(device, residual_a) <= low + 1e-15
+    assert low <= high + 1e-15
+
+
+def test_only_class_a_surely_detects_a_grounded_neutral() -> None:
+    """Class A devices always detect a grounded neutral, IEC devices never, equipment devices perhaps."""
+    assert DEVICES["class_a"].grounded_neutral == 1
+    assert DEVICES["rcd_30"].grounded_neutral == DEVICES["rcd_100_s"].grounded_neutral == DEVICES["none"].grounded_neutral == 0
+    assert all(0 < DEVICES[id_].grounded_neutral < 1 for id_ in ("elci_30", "gfpe_30", "gfpe_100"))
+
+
+def test_every_device_has_a_source() -> None:
+    """Every row is keyed by its own id, states its source, and has its band in order."""
+    for id_, device in DEVICES.items():
+        assert (device.id, bool(device.source)) == (id_, True)
+        assert 0 < device.non_operating_ma <= device.operating_ma
+
+
+@given(st.floats(6, 300), st.floats(6, 300))
+def test_class_a_time_falls(one_ma: float, other_ma: float) -> None:
+    """The permitted time of a Class A device never grows with the residual."""
+    low, high = sorted((one_ma, other_ma))
+    assert class_a_longest_break_s(low) >= class_a_longest_break_s(high)
+
+
+def test_unpublished_break_time_is_unbounded() -> None:
+    """A device that publishes no time, or need not trip at this residual, may take for ever."""
+    assert DEVICES["gfpe_30"].break_time_s(1000) == math.inf
+    assert DEVICES["rcd_30"].break_time_s(29.9) == math.inf
+    assert class_a_longest_break_s(5.9) == math.inf
+
+
+@given(st.sampled_from([16, 20, 30, 32, 50]), st.floats(0, 10), st.floats(0, 10), st.floats(0, 200), st.floats(0, 200))
+def test_more_current_or_time_opens_no_less(rated: float, one: float, other: float, early: float, late: float) -> None:
+    """The overcurrent probability never falls with more current or more minutes, and is never a hard zero or one."""
+    low, high = sorted((one, other))
+    early, late = sorted((early, late))
+    corner = overcurrent_probability(rated, low * rated, early)
+    assert 0 < FLOOR <= corner <= overcurrent_probability(rated, high * rated, early) <= CEILING < 1
+    assert corner <= overcurrent_probability(rated, low * rated, late)
+
+
+def test_magnetic_release() -> None:
+    """A transformer's inrush of 12 times the rating opens a C breaker at once, a D breaker perhaps, and 2 times opens neither."""
+    assert inrush_probability(16, 192, "c") > 0.95
+    assert 0.05 < inrush_probability(16, 192, "d") < 0.5
+    assert max(inrush_probability(16, 32, curve) for curve in MAGNETIC_BANDS) < 0.05
+
+
+@given(shares, shares, shares, delays)
+def test_patterns_are_a_distribution(feeder: float, pedestal: float, aboard: float, delayed: set[str]) -> None:
+    """Opening patterns sum to one, none is negative, and nothing opens exactly when no device wants to."""
+    patterns = opening_patterns({"feeder": feeder, "pedestal": pedestal, "aboard": aboard}, delayed)
+    assert tuple(patterns) == PATTERNS
+    assert math.fsum(patterns.values()) == pytest.approx(1, abs=1e-12)
+    assert min(patterns.values()) >= 0
+    assert patterns["none"] == pytest.approx((1 - feeder) * (1 - pedestal) * (1 - aboard), abs=1e-12)
+
+
+@given(shares, shares, shares, delays)
+def test_patterns_are_the_mean_over_who_wants(feeder: float, pedestal: float, aboard: float, delayed: set[str]) -> None:
+    """Devices want to open independently: patterns are the mean of the eight certain cases under their probabilities."""
+    chances = {"feeder": feeder, "pedestal": pedestal, "aboard": aboard}
+    mean = dict.fromkeys(PATTERNS, 0.0)
+    for wants in product((0.0, 1.0), repeat=3):
+        case = dict(zip(POSITIONS, wants, strict=True))
+        weight = math.prod(chances[position] if case[position] else 1 - chances[position] for position in POSITIONS)
+        for pattern, share in opening_patterns(case, delayed).items():
+            mean[pattern] += weight * share
+    assert opening_patterns(chances, delayed) == pytest.approx(mean, abs=1e-12)
+
+
+@pytest.mark.parametrize("position", POSITIONS)
+@given(delayed=delays)
+def test_a_lone_device_opens(position: str, delayed: set[str]) -> None:
+    """A device that alone wants to open does, delayed or not."""
+    assert opening_patterns({position: 1.0}, delayed)[position] == 1
+
+
+def test_two_instantaneous_devices_are_not_coordinated() -> None:
+    """Of two instantaneous devices in series either may open alone, equally likely, or both: a probability, not a rule."""
+    patterns = opening_patterns({"pedestal": 1.0, "aboard": 1.0})
+    assert patterns["pedestal"] == patterns["aboard"]
+    assert min(patterns["pedestal"], patterns["both"]) > 0.2
+
+
+@given(shares, shares, shares)
+def test_pedestal_and_aboard_mirror(feeder: float, one: float, other: float) -> None:
+    """Exchanging pedestal and aboard exchanges their patterns."""
+    straight = opening_patterns({"feeder": feeder, "pedestal": one, "aboard": other}, {"aboard"})
+    mirrored = opening_patterns({"feeder": feeder, "pedestal": other, "aboard": one}, {"pedestal"})
+    swap = {"pedestal": "aboard", "aboard": "pedestal"}
+    assert {swap.get(pattern, pattern): share for pattern, share in mirrored.items()} == pytest.approx(straight, abs=1e-12)
+
+
+def test_a_delayed_device_lets_the_other_open_first() -> None:
+    """A device that waits on purpose usually leaves the trip to the one that does not, yet may still be found open."""
+    everything = dict.fromkeys(POSITIONS, 1.0)
+    assert 0 < opening_patterns(everything, {"feeder"})["feeder"] < opening_patterns(everything)["feeder"]
+    assert opening_patterns(everything, set(POSITIONS)) == opening_patterns(everything)
+    patterns = opening_patterns({"pedestal": 1.0, "aboard": 1.0}, {"pedestal"})
+    assert patterns["aboard"] > 0.8
+    assert min(patterns["pedestal"], patterns["both"]) > 0
