@@ -18,7 +18,7 @@ from __future__ import annotations
 
 import heapq
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, NamedTuple
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -38,17 +38,15 @@ class SingularError(Exception):
         self.unknowns = unknowns
 
 
-@dataclass(frozen=True, slots=True)
-class Single:
+class Single(NamedTuple):
     """One eliminated unknown: the inverse of its pivot and its multipliers in the unknowns left."""
 
     unknown: int
     inverse: complex
-    multipliers: tuple[tuple[int, complex], ...]
+    multipliers: list[tuple[int, complex]]
 
 
-@dataclass(frozen=True, slots=True)
-class Pair:
+class Pair(NamedTuple):
     """Two unknowns eliminated together: the inverse [[p, q], [q, r]] of their block and (unknown, first, second) multipliers."""
 
     first: int
@@ -56,7 +54,7 @@ class Pair:
     p: complex
     q: complex
     r: complex
-    multipliers: tuple[tuple[int, complex, complex], ...]
+    multipliers: list[tuple[int, complex, complex]]
 
 
 @dataclass(frozen=True, slots=True)
@@ -171,16 +169,18 @@ def _take(rows: list[Row], chosen: tuple[int, ...]) -> Single | Pair:
 
 def _take_single(rows: list[Row], unknown: int) -> Single:
     row = rows[unknown]
-    inverse = 1 / row.pop(unknown)
     rows[unknown] = {}
-    multipliers = tuple([(other, entry * inverse) for other, entry in row.items()])
-    for other, _ in multipliers:
-        del rows[other][unknown]
-    for place, (other, by_one) in enumerate(multipliers):
+    inverse = 1 / row.pop(unknown)
+    entries = list(row.items())
+    multipliers = []
+    for place, (other, entry) in enumerate(entries, 1):
+        by = entry * inverse
+        multipliers.append((other, by))
         target = rows[other]
-        target[other] -= by_one * row[other]
-        for beside, _ in multipliers[place + 1 :]:
-            _put(rows, target, other, beside, target.get(beside, 0j) - by_one * row[beside])
+        del target[unknown]
+        target[other] -= by * entry
+        for beside, further in entries[place:]:
+            _subtract(rows, target, other, beside, by * further)
     return Single(unknown, inverse, multipliers)
 
 
@@ -191,27 +191,29 @@ def _take_pair(rows: list[Row], first: int, second: int) -> Pair:
     del two[first]
     block = a * c - b * b
     p, q, r = c / block, -b / block, a / block
-    multipliers: list[tuple[int, complex, complex]] = []
-    for other in {**one, **two}:
-        x, y = one.get(other, 0j), two.get(other, 0j)
-        multipliers.append((other, p * x + q * y, q * x + r * y))
+    entries = [(other, entry, two.pop(other, 0j)) for other, entry in one.items()]
+    entries += [(other, 0j, entry) for other, entry in two.items()]
+    multipliers = []
+    for place, (other, x, y) in enumerate(entries, 1):
+        by_one, by_two = p * x + q * y, q * x + r * y
+        multipliers.append((other, by_one, by_two))
         target = rows[other]
         target.pop(first, None)
         target.pop(second, None)
-    for place, (other, by_one, by_two) in enumerate(multipliers):
-        target = rows[other]
-        target[other] -= by_one * one.get(other, 0j) + by_two * two.get(other, 0j)
-        for beside, _, _ in multipliers[place + 1 :]:
-            taken = by_one * one.get(beside, 0j) + by_two * two.get(beside, 0j)
-            _put(rows, target, other, beside, target.get(beside, 0j) - taken)
-    return Pair(first, second, p, q, r, tuple(multipliers))
+        target[other] -= by_one * x + by_two * y
+        for beside, further_x, further_y in entries[place:]:
+            _subtract(rows, target, other, beside, by_one * further_x + by_two * further_y)
+    return Pair(first, second, p, q, r, multipliers)
 
 
-def _put(rows: list[Row], target: Row, row: int, column: int, value: complex) -> None:
-    """Write an entry and its mirror image; an exact zero leaves no entry, so that a closed loop really lets go of its potentials."""
-    if value:
-        target[column] = value
-        rows[column][row] = value
-    elif column in target:
-        del target[column]
-        del rows[column][row]
+def _subtract(rows: list[Row], target: Row, row: int, column: int, taken: complex) -> None:
+    """Take from an entry and its mirror image; an exact zero leaves no entry, so that a closed loop really lets go of its potentials."""
+    if column in target:
+        value = target[column] - taken
+        if value:
+            target[column] = rows[column][row] = value
+        else:
+            del target[column]
+            del rows[column][row]
+    elif taken:
+        target[column] = rows[column][row] = -taken

@@ -35,10 +35,10 @@ class Probe:
 class Equations:
     """The unknowns of a network, in node order and then in branch order, and where each stands in the matrix.
 
-    `floating` holds the names of the nodes with no connection to the reference.
+    `floating` holds the names of the nodes with no connection to the reference, `ties` those of them that are tied to it.
     """
 
-    __slots__ = ("_branches", "_flows", "_islands", "_nodes", "floating", "network")
+    __slots__ = ("_branches", "_flows", "_islands", "_nodes", "floating", "network", "ties")
 
     def __init__(self, network: Network) -> None:
         self.network = network
@@ -46,7 +46,8 @@ class Equations:
         self._islands = _islands(network, names)
         home = self._islands[network.reference]
         self.floating = tuple(name for name in names if self._islands[name] != home)
-        # An island is named by its first node, which is the one tied to the reference; -1 marks a node of known, zero voltage.
+        # An island is named by its first node, which is the one that is tied; -1 marks a node whose voltage is zero by choice.
+        self.ties = tuple(name for name in self.floating if self._islands[name] == name)
         free = [name for name in names if self._islands[name] != name]
         self._nodes = {**dict.fromkeys(names, -1), **{name: place for place, name in enumerate(free)}}
         enclosed = {branch_id for sensor in network.sensors for branch_id in sensor.branches}
