@@ -59,6 +59,7 @@ class Equations:
 
     def triangle(self) -> Triangle:
         """Factors of the network's matrix; NetworkError, in terms of the circuit, if it has no single solution."""
+        _check_no_ideal_loop(self.network)
         potentials = sum(place >= 0 for place in self._nodes.values())
         rows: list[Row] = [{place: 0j} for place in range(potentials + len(self._flows))]
         for branch in self.network.branches:
@@ -68,7 +69,6 @@ class Equations:
                 _stamp_admittance(rows, a, b, 1 / branch.impedance)
             else:
                 _stamp_current(rows, a, b, flow, branch.impedance)
-        _check_no_ideal_loop(self.network)
         try:
             return eliminate(rows, potentials)
         except SingularError as singular:

@@ -59,7 +59,7 @@ def netlist(network: Network, title: str) -> str:
             rule = "a sensor's id must be lower-case letters, digits and underscores to be printed"
             raise NetworkError(f"{sensor.id}: {rule}", name=sensor.id, rule=rule, value=sensor.id)
         counted = "+".join(f"i(vs{places[branch_id]})" for branch_id in sensor.branches)
-        lines += [f"let res_{sensor.id} = {counted or '0'}", f"print res_{sensor.id}"]
+        lines += [f"let res_{sensor.id} = {counted or '(0,0)'}", f"print res_{sensor.id}"]
     lines += ["quit 0", ".endc", ".end"]
     return "\n".join(lines) + "\n"
 

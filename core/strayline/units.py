@@ -75,8 +75,8 @@ def awg_area_mm2(awg: int) -> float:
     """
     if awg not in AWG_SIZES:
         raise QuantityError("range", f"Gauge {awg} is not between 4/0 and 36.", str(awg), "AWG", AWG_SIZES[0], AWG_SIZES[-1])
-    diameter_mm = 0.005 * MM_PER_INCH * 92 ** ((36 - awg) / 39)
-    return math.pi / 4 * diameter_mm**2
+    diameter_mm = 0.005 * MM_PER_INCH * math.pow(92, (36 - awg) / 39)
+    return math.pi / 4 * diameter_mm * diameter_mm
 
 
 def copper_ohms(length_m: float, area_mm2: float, celsius: float = 20) -> float:
