@@ -466,6 +466,27 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "A trained person reads ohms through the cord or adapter, unplugged at both ends: the neutral pin reads through "
         "to the ground (earth) pin."
     ),
+    "cause.line_ground_exchanged.title": "Line and ground are swapped in a cord or adapter",
+    "cause.line_ground_exchanged.lead": (
+        "Two wires are swapped, so the boat's metal hangs on the live line. Touching it, or the water near it, can kill."
+    ),
+    "cause.line_ground_exchanged.tonight": (
+        *_LETHAL_TONIGHT,
+        "Turn the dock breaker off first. Touch no metal aboard until the plug is out.",
+        "Put the cord and the adapters aside. Nobody uses them again.",
+    ),
+    "cause.line_ground_exchanged.remedy": (
+        "Do not use that cord or adapter again. Replace it.",
+        "A technician checks the boat's inlet and bonding before it is plugged in.",
+    ),
+    "cause.line_ground_exchanged.marina": (
+        "Line and ground (earth) may be swapped in my cord, adapter or inlet, or in your post. People could be hurt. "
+        "Please cut the power of this outlet and have it checked."
+    ),
+    "cause.line_ground_exchanged.confirm": (
+        "A trained person reads ohms through the cord or adapter, unplugged at both ends: a line pin reads through to "
+        "the ground (earth) pin."
+    ),
     "cause.neutral_ahead_of_device.title": "A neutral is landed on the wrong side of a device",
     "cause.neutral_ahead_of_device.lead": (
         "One neutral wire goes around the device instead of through it. The device sees that load's current go out but not come back."
@@ -483,8 +504,8 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     ),
     "cause.open_ground_with_leak.title": "The ground wire is broken, and something leaks",
     "cause.open_ground_with_leak.lead": (
-        "The ground (earth) wire no longer reaches the dock, so a leak makes the boat's metal live. The current goes into "
-        "the water, or waits for a person to touch it."
+        "The ground (earth) wire no longer reaches the dock, so a leak makes the boat's metal live. The current runs "
+        "off into the water, or waits for a person to touch it."
     ),
     "cause.open_ground_with_leak.tonight": (
         *_LETHAL_TONIGHT,
@@ -828,14 +849,14 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "Set the meter to ohms. Touch its leads together and note the reading.",
         "Measure each pin to the same pin at the far end. It should read close to the leads alone.",
         "Measure each pin to every other pin. It should read open, unless the label shows that they are joined.",
-        "Note the result for the neutral and the ground (earth) pins.",
+        "Note above all what the ground (earth) pin reads through to.",
     ),
     "test.adapter_continuity.cautions": (
         "Only with the part unplugged at both ends. Never measure into the dock outlet or the boat's inlet.",
         "Wriggle the ends while you measure: a loose wire may come and go.",
     ),
     "test.adapter_continuity.fine": "Each pin reads through to its own pin only",
-    "test.adapter_continuity.exchanged": "Neutral and ground (earth) are swapped",
+    "test.adapter_continuity.exchanged": "A pin reads through to the wrong pin",
     "test.adapter_continuity.ground_open": "The ground (earth) pin reads open",
     "test.adapter_continuity.why": "A swapped or broken wire in a cord or adapter is deadly, and no trip test is sure to show it.",
     "test.bond_ohms.title": "Ohms from neutral to ground aboard",
@@ -1037,6 +1058,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "page.start_again": "Start the engine again",
     "page.offline_getting": "Saving for offline use: {done} of {total}",
     "page.offline_ready": "Ready to work offline",
+    "page.offline_failed": "Not all parts are saved yet. Stay online and open this page once more.",
     "page.offline_never": "This browser can't keep the page for offline use.",
     "page.update_ready": "A new version is here. It starts when all tabs of this page are closed.",
     "page.notices": "Notices",
