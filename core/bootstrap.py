@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
 ROOT = Path(__file__).resolve().parent.parent
 HIDDEN = ROOT / ".strayline"
-DOWNLOADS = HIDDEN / "downloads"
+PIP = ("-m", "pip", "--disable-pip-version-check")
 
 
 class MissingToolError(Exception):
@@ -45,8 +45,7 @@ def environment(name: str, lock: Path) -> Path:
                 raise MissingToolError(
                     "This Python cannot make environments; install its venv part (on Debian or Ubuntu: apt-get install python3-venv)."
                 ) from error
-            fetch = ["-m", "pip", "--disable-pip-version-check", "install", "--quiet", "--require-hashes", "-r", str(lock)]
-            if run(python, *fetch):
+            if run(python, *PIP, "install", "--quiet", "--require-hashes", "-r", lock):
                 raise _not_fetched(lock)
             _write_stamp(folder, stamp)
     return python
@@ -71,6 +70,24 @@ def node_tools(package: Path) -> Path:
                 raise _not_fetched(manifests[1])
             _write_stamp(folder, stamp)
     return folder
+
+
+def wheels(lock: Path, python_version: str) -> list[Path]:
+    """The wheels of `lock`, made for another Python, as files in `.strayline/downloads`; fetched when missing or stale.
+
+    Raises MissingToolError when one cannot be fetched.
+    """
+    folder = HIDDEN / "downloads" / lock.stem
+    stamp = _stamp(folder, lock.read_bytes())
+    python = environment("webui", ROOT / "webui" / "requirements.lock")
+    with _turn("downloads"):
+        if not _fresh(folder, stamp):
+            shutil.rmtree(folder, ignore_errors=True)
+            kind = ["--no-deps", "--only-binary=:all:", "--python-version", python_version]
+            if run(python, *PIP, "download", "--quiet", "--require-hashes", "-r", lock, *kind, "-d", folder):
+                raise _not_fetched(lock)
+            _write_stamp(folder, stamp)
+    return sorted(folder.glob("*.whl"))
 
 
 def npm() -> str:
