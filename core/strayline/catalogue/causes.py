@@ -46,6 +46,7 @@ CAUSES: tuple[Cause, ...] = (
     Cause("frame_strap", "fault", 0.07, 0.01, "technician", True, timing=_AT_ONCE),
     Cause("inverter_bond", "fault", 0.07, 0.06, "technician", True, timing=_AT_ONCE),
     Cause("ground_neutral_exchanged", "fault", 0.04, 0.03, "technician", True, timing=_AT_ONCE),
+    Cause("line_ground_exchanged", "fault", 0.004, 0.003, "technician", True, timing=_AT_ONCE),
     Cause("neutral_ahead_of_device", "fault", 0.03, 0.03, "technician", timing=_AT_ONCE),
     Cause("open_ground_with_leak", "fault", 0.03, 0.03, "technician", True, timing=_AT_ONCE),
     Cause("feeder_accumulation", "fault", 0.04, 0.04, "electrician", timing={"computed": 0.35, "minutes": 0.05, "random": 0.50, "wet": 0.10}),

@@ -64,7 +64,19 @@ TESTS: tuple[Test, ...] = (
     Test("clamp_cord", ("instructed", "technician", "electrician"), "clamp", 4, 0, True, "as_found", "number", (), ("known_wiring",), "cord_sum_a", "mA", "clamp"),
     Test("clamp_live", _ABOARD, "clamp", 12, 0, True, "as_found", "number", (), ("known_wiring",), "live_sum_a", "mA", "clamp"),
     Test("clamp_ground", _ABOARD, "clamp", 10, 0, True, "as_found", "number", (), ("known_wiring",), "ground_a", "mA", "clamp"),
-    Test("insulation", _ABOARD, "insulation", 40, 0, False, "cord_out", "number", (), (), "insulation_ohm", "Mohm", "insulation"),
+    Test("insulation", _ABOARD, "insulation", 40, 0, False, "cord_joined", "number", (), (), "insulation_ohm", "Mohm", "insulation"),
 )
 
 TEST: dict[str, Test] = {test.id: test for test in TESTS}
+
+# Stated probabilities of what a look or a button shows, by cause; "" is every other cause (common practice).
+STATED: dict[str, dict[str, tuple[float, ...]]] = {
+    "look_over": {
+        "": (0.85, 0.11, 0.04),
+        "wet_cord": (0.40, 0.52, 0.08),
+        "wet_inlet": (0.35, 0.50, 0.15),
+        "wet_pedestal": (0.55, 0.37, 0.08),
+        "overload": (0.70, 0.06, 0.24),
+        "open_ground_with_leak": (0.65, 0.15, 0.20),
+    },
+}

@@ -1,0 +1,353 @@
+"""Each cause: what it changes in a Network, and the grid of severities the diagnosis sums over.
+
+A cause is either a set of shunts (an impedance across two nodes, closed form over ports) or a rewiring of the network
+(exchange, open, a neutral landed elsewhere) with shunts on top. `effect` is the only place where a cause meets a circuit;
+case files, the netlist and the diagnosis all come through it.
+"""
+
+from __future__ import annotations
+
+import dataclasses
+import math
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
+
+from strayline.catalogue.causes import CAUSE
+from strayline.components import CONNECTORS
+from strayline.errors import CaseError
+from strayline.installation import ELEMENT_TAPS, Installation, Part, base, tap_node, zone_parts
+from strayline.network import Branch, Network, with_branches, without_branches
+
+
+@dataclass(frozen=True, slots=True)
+class Fault:
+    """One cause at one place and severity; only the numbers its cause uses are set.
+
+    at -- part id; load -- the load concerned; ohms; position along an element from 0 (line end) to 1; nanofarads;
+    scale -- operating values multiplied by this; spontaneous -- probability of opening with no residual at all
+    """
+
+    cause: str
+    at: str = ""
+    load: str = ""
+    ohms: float = 0.0
+    position: float = 0.0
+    nanofarads: float = 0.0
+    scale: float = 1.0
+    spontaneous: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Shunt:
+    """An impedance in ohms from node `a` to node `b`; `absent_in` lists the contexts in which it is not there."""
+
+    id: str
+    a: str
+    b: str
+    ohms: complex
+    kind: str
+    owner: str
+    absent_in: tuple[str, ...] = ()
+
+    def branch(self) -> Branch:
+        return Branch(self.id, self.a, self.b, complex(self.ohms), self.kind, self.owner)
+
+
+@dataclass(frozen=True, slots=True)
+class Effect:
+    """The network a fault leaves, and the shunts it adds to it."""
+
+    network: Network
+    shunts: tuple[Shunt, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Severity:
+    """One point of a cause's grid with its share of the cause's prior."""
+
+    fault: Fault
+    weight: float
+
+
+def applied(installation: Installation, network: Network, faults: Iterable[Fault]) -> Network:
+    """The network with every fault in it, shunts as branches: what `residuals` and `netlist` solve."""
+    for number, fault in enumerate(faults):
+        made = effect(installation, network, fault)
+        branches = [dataclasses.replace(shunt.branch(), id=f"fault{number}.{shunt.id}") for shunt in made.shunts]
+        network = with_branches(made.network, *branches)
+    return network
+
+
+def effect(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """What one fault does to a network. Raises CaseError when the fault names a part that cannot have it."""
+    if fault.cause not in _EFFECTS:
+        raise CaseError("faults.cause", f"must be one of {', '.join(_EFFECTS)}", fault.cause)
+    return _EFFECTS[fault.cause](installation, network, fault)
+
+
+def _part(installation: Installation, part_id: str, *kinds: str) -> Part:
+    part = installation.index.get(part_id)
+    if part is None or part.kind not in kinds:
+        raise CaseError("faults.at", f"must be the id of a {' or '.join(kinds)}", part_id)
+    return part
+
+
+def _ohms(fault: Fault) -> float:
+    if not fault.ohms > 0:
+        raise CaseError("faults.ohms", "must be above zero ohm", fault.ohms)
+    return fault.ohms
+
+
+def _nothing(installation: Installation, network: Network, fault: Fault) -> Effect:
+    return Effect(network)
+
+
+def _appliance_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
+    load = _part(installation, fault.at, "load")
+    network, node = _leak_point(network, load, fault.position)
+    return Effect(network, (Shunt("leak", node, f"{load.id}.frame", _ohms(fault), "leak", load.id),))
+
+
+def _leak_point(network: Network, load: Part, position: float) -> tuple[Network, str]:
+    """The node `position` along a load's element, made by cutting the element there when no tap is."""
+    if not 0 <= position <= 1:
+        raise CaseError("faults.position", "must be between 0 (line end) and 1", position)
+    if position == 0:
+        return network, f"{load.id}.in"
+    node = tap_node(load.id, position)
+    if load.flag("element") and position in ELEMENT_TAPS:
+        return network, node
+    cuts = (0.0, *ELEMENT_TAPS, 1.0) if load.flag("element") else (0.0, 1.0)
+    number = next(number for number in range(len(cuts) - 1) if position <= cuts[number + 1])
+    name = f"{load.id}.element{number}" if load.flag("element") else f"{load.id}.load"
+    whole = next(branch for branch in network.branches if branch.id == name)
+    if position == 1:
+        return network, whole.to_node
+    share = (position - cuts[number]) / (cuts[number + 1] - cuts[number])
+    near = dataclasses.replace(whole, to_node=node, impedance=whole.impedance * share)
+    far = dataclasses.replace(whole, id=f"{name}b", from_node=node, impedance=whole.impedance * (1 - share))
+    branches = tuple(near if branch is whole else branch for branch in network.branches)
+    sensors = tuple(
+        dataclasses.replace(sensor, zone=sensor.zone | {node}) if f"{load.id}.in" in sensor.zone else sensor for sensor in network.sensors
+    )
+    return dataclasses.replace(network, branches=(*branches, far), sensors=sensors), node
+
+
+def _line_to_ground(kind: str) -> Callable[[Installation, Network, Fault], Effect]:
+    def wet(installation: Installation, network: Network, fault: Fault) -> Effect:
+        part = _part(installation, fault.at, *kind.split())
+        return Effect(network, (Shunt("leak", f"{part.id}.L1", f"{part.id}.G", _ohms(fault), "leak", part.id),))
+
+    return wet
+
+
+def _summed_filters(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """The stated capacitance, shared equally by the loads of the panel's boat, each at its own line terminal."""
+    loads = [part for part in own_parts(installation, fault.at or None) if part.kind == "load"]
+    farads = fault.nanofarads * 1e-9 / max(len(loads), 1)
+    if not farads > 0:
+        raise CaseError("faults.nanofarads", "must be above zero nF", fault.nanofarads)
+    ohms = -1j / (2 * math.pi * network.hertz * farads)
+    return Effect(network, tuple(Shunt(f"filter.{load.id}", f"{load.id}.in", f"{load.id}.frame", ohms, "filter", load.id) for load in loads))
+
+
+def _panel_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
+    panel = _part(installation, fault.at, "panel")
+    return Effect(network, (Shunt("bond", f"{panel.id}.N", f"{panel.id}.G", _ohms(fault), "bond", panel.id),))
+
+
+def _frame_strap(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """The appliance's frame tied to the boat's neutral bus: gone only when the appliance is unplugged."""
+    load = _part(installation, fault.at, "load")
+    panel = panel_of(installation, load)
+    return Effect(network, (Shunt("strap", f"{panel.id}.N", f"{load.id}.frame", _ohms(fault), "bond", load.id),))
+
+
+def _inverter_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """An inverter's own bond: with `spontaneous` 0 it is welded, with 1 it lasts only until shore power is accepted."""
+    panel = _part(installation, fault.at, "panel")
+    absent_in = ("inverter_settled", "test_load", "one_load") if fault.spontaneous else ()
+    return Effect(network, (Shunt("relay", f"{panel.id}.N", f"{panel.id}.G", _ohms(fault), "bond", panel.id, absent_in),))
+
+
+def _exchanged(one: str, other: str) -> Callable[[Installation, Network, Fault], Effect]:
+    """Two kinds of conductor change places at the load end of a cord, adapter or inlet."""
+
+    def exchange(installation: Installation, network: Network, fault: Fault) -> Effect:
+        part = _part(installation, fault.at, "cord", "adapter", "inlet")
+        pairs = zip(*([branch for branch in network.branches if branch.owner == part.id and branch.kind == kind] for kind in (one, other)), strict=False)
+        swapped = {}
+        for first, second in pairs:
+            swapped[first.id] = dataclasses.replace(first, to_node=second.to_node)
+            swapped[second.id] = dataclasses.replace(second, to_node=first.to_node)
+        return Effect(dataclasses.replace(network, branches=tuple(swapped.get(branch.id, branch) for branch in network.branches)))
+
+    return exchange
+
+
+def _neutral_ahead_of_device(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """A load's neutral lands on the supply side of the device: its return passes outside the window."""
+    device = _part(installation, fault.at, "main")
+    load = _part(installation, fault.load, "load")
+    ahead = next((branch.from_node for branch in network.branches if branch.id == f"{device.id}.N"), None)
+    returns = [branch for branch in network.branches if branch.owner == load.id and branch.kind == "load"]
+    if ahead is None or load.text("across") == "L1-L2":
+        raise CaseError("faults.load", "must be a load with a neutral, behind a closed main", load.id)
+    last = returns[-1]
+    moved = dataclasses.replace(last, to_node=ahead)
+    return Effect(dataclasses.replace(network, branches=tuple(moved if branch is last else branch for branch in network.branches)))
+
+
+def _open_ground_with_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
+    part = _part(installation, fault.at, "cord", "adapter", "inlet", "receptacle")
+    load = _part(installation, fault.load, "load")
+    opened = without_branches(network, [branch.id for branch in network.branches if branch.owner == part.id and branch.kind == "protective"])
+    return Effect(opened, (Shunt("leak", f"{load.id}.in", f"{load.id}.frame", _ohms(fault), "leak", load.id),))
+
+
+def _overload(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """More load on the line than the breaker carries for long: an extra appliance in parallel with a stated one."""
+    load = _part(installation, fault.at, "load")
+    panel = panel_of(installation, load)
+    neutral = f"{panel.id}.N"
+    return Effect(network, (Shunt("extra", f"{load.id}.in", neutral, _ohms(fault), "load", load.id),))
+
+
+def _joined_inlets(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """Two panels' neutral buses joined aboard; nothing to add where one panel takes both inlets."""
+    panels = [part for part in own_parts(installation, fault.at or None) if part.kind == "panel"]
+    if len(panels) < 2:
+        return Effect(network)
+    return Effect(network, (Shunt("joined", f"{panels[0].id}.N", f"{panels[1].id}.N", fault.ohms or 0.005, "neutral", panels[0].id),))
+
+
+_EFFECTS: dict[str, Callable[[Installation, Network, Fault], Effect]] = {
+    "appliance_leak": _appliance_leak,
+    "wet_cord": _line_to_ground("cord adapter"),
+    "wet_inlet": _line_to_ground("inlet"),
+    "wet_pedestal": _line_to_ground("pedestal receptacle"),
+    "summed_filters": _summed_filters,
+    "panel_bond": _panel_bond,
+    "frame_strap": _frame_strap,
+    "inverter_bond": _inverter_bond,
+    "ground_neutral_exchanged": _exchanged("neutral", "protective"),
+    "line_ground_exchanged": _exchanged("line", "protective"),
+    "neutral_ahead_of_device": _neutral_ahead_of_device,
+    "open_ground_with_leak": _open_ground_with_leak,
+    "feeder_accumulation": _line_to_ground("pedestal"),
+    "touchy_device": _nothing,
+    "overload": _overload,
+    "nothing_now": _nothing,
+    "combining_y": _nothing,
+    "joined_inlets": _joined_inlets,
+}
+if set(_EFFECTS) != set(CAUSE):
+    raise RuntimeError(f"causes without an effect or effects without a cause: {set(_EFFECTS) ^ set(CAUSE)}")
+
+
+# --- whose boat it is ----------------------------------------------------------------------------------------------
+
+
+def own_parts(installation: Installation, panel_id: str | None = None) -> tuple[Part, ...]:
+    """The parts of one boat and of what it is plugged into, receptacles included: of the stated panel's, else the first panel's."""
+    panels = installation.of_kind("panel")
+    if not panels:
+        return ()
+    panel = installation.part(panel_id) if panel_id else panels[0]
+    found = {panel.id}
+    for receptacle in installation.of_kind("receptacle"):
+        zone = zone_parts(installation, receptacle)
+        if panel.id in zone:
+            found |= zone
+    if len(found) == 1:  # nothing plugged in
+        found |= set(installation.downstream(panel.id))
+    return tuple(part for part in installation.parts if part.id in found)
+
+
+def panel_of(installation: Installation, load: Part) -> Part:
+    """The panel a load hangs on, through its breaker or directly."""
+    parent = installation.part(base(load.parents[0]))
+    return parent if parent.kind == "panel" else installation.part(base(parent.parents[0]))
+
+
+# --- severities ----------------------------------------------------------------------------------------------------
+
+
+def severities(cause: str, installation: Installation, volts: float) -> tuple[Severity, ...]:
+    """The deterministic grid of one cause in one installation; empty where the cause cannot be.
+
+    Ohms are spread geometrically around the values that make the usual operating currents (V / I), milliohms around
+    usual conductors.
+    """
+    mine = own_parts(installation)
+    of = {kind: [part for part in mine if part.kind == kind] for kind in ("load", "cord", "adapter", "inlet", "main", "panel", "receptacle")}
+    leak_ohms = [volts / milliamperes * 1e3 for milliamperes in (12, 45, 250)]
+    faults: list[Fault] = []
+    match cause:
+        case "appliance_leak":
+            biggest = _biggest(of["load"])
+            faults = [
+                Fault(cause, at=load.id, ohms=ohms, position=position)
+                for load in biggest
+                for position in ((0.1, 0.5, 0.9) if load.flag("element") else (0.0,))
+                for ohms in leak_ohms
+            ]
+        case "wet_cord":
+            faults = [Fault(cause, at=part.id, ohms=ohms) for part in (*of["cord"], *of["adapter"])[:1] for ohms in leak_ohms]
+        case "wet_inlet":
+            faults = [Fault(cause, at=part.id, ohms=ohms) for part in of["inlet"][:1] for ohms in leak_ohms]
+        case "wet_pedestal":
+            pedestals = [installation.part(base(part.parents[0])) for part in of["receptacle"][:1]]
+            faults = [Fault(cause, at=part.id, ohms=ohms) for part in (*of["receptacle"][:1], *pedestals) for ohms in leak_ohms[1:]]
+        case "summed_filters":
+            hertz = 50.0 if volts > 200 else 60.0
+            faults = [Fault(cause, nanofarads=ma * 1e-3 / (2 * math.pi * hertz * volts) * 1e9) for ma in (10, 20, 34)] if of["load"] else []
+        case "panel_bond":
+            faults = [Fault(cause, at=part.id, ohms=ohms) for part in of["panel"][:1] for ohms in (0.02, 0.2, 2.0)]
+        case "frame_strap":
+            faults = [Fault(cause, at=part.id, ohms=ohms) for part in _biggest(of["load"])[:1] for ohms in (0.05, 0.5)]
+        case "inverter_bond":
+            faults = [Fault(cause, at=part.id, ohms=0.05, spontaneous=window) for part in of["panel"][:1] for window in (0.0, 1.0)]
+        case "ground_neutral_exchanged" | "line_ground_exchanged":
+            faults = [Fault(cause, at=part.id) for part in (*of["adapter"], *of["cord"], *of["inlet"])[:2] if _one_tail(part)]
+        case "neutral_ahead_of_device":
+            watched = [part for part in of["main"][:1] if part.values["device"] != "none"]
+            loads = [load for load in of["load"] if load.text("across") == "L1-N" and main_of(installation, load) in watched]
+            faults = [Fault(cause, at=part.id, load=load.id) for part in watched for load in loads[:2]]
+        case "open_ground_with_leak":
+            faults = [Fault(cause, at=part.id, load=load.id, ohms=ohms) for part in of["cord"][:1] for load in _biggest(of["load"])[:1] for ohms in leak_ohms[1:]]
+        case "feeder_accumulation":
+            fed = [part for part in of["receptacle"][:1] if installation.of_kind("feeder")]
+            faults = [Fault(cause, at=base(part.parents[0]), ohms=volts / ma * 1e3) for part in fed for ma in (75, 110, 160)]
+        case "touchy_device":
+            faults = [Fault(cause, at=part.id, scale=scale, spontaneous=often) for part in of["receptacle"][:1] for scale, often in ((0.3, 0.15), (0.1, 0.5), (0.02, 0.9))]
+        case "overload":
+            loads = [load for load in _biggest(of["load"]) if load.text("across") == "L1-N"][:1]
+            rated = _rated_a(of["receptacle"])
+            faults = [Fault(cause, at=load.id, ohms=volts / (rated * more)) for load in loads for more in (0.2, 0.5, 0.9)]
+        case "nothing_now":
+            faults = [Fault(cause)]
+        case "combining_y":
+            faults = [Fault(cause) for part in of["adapter"] if len(part.parents) == 2]
+        case "joined_inlets":
+            faults = [Fault(cause)] if len(of["inlet"]) == 2 else []
+    return tuple(Severity(fault, 1.0 / len(faults)) for fault in faults)
+
+
+def _one_tail(part: Part) -> bool:
+    return len(part.parents) == 1 and part.values.get("style") != "splitting_y"
+
+
+def _biggest(loads: list[Part]) -> list[Part]:
+    """The loads where leaks live: elements first, then motors and chargers, three at most."""
+    return sorted(loads, key=lambda load: (not load.flag("element"), loads.index(load)))[:2]
+
+
+def main_of(installation: Installation, load: Part) -> Part:
+    """The boat main a load hangs behind (its panel's first)."""
+    return installation.part(base(panel_of(installation, load).parents[0]))
+
+
+def _rated_a(receptacles: list[Part]) -> float:
+    return next((CONNECTORS[part.text("connector")].rated_a for part in receptacles), 30.0)
+

@@ -1,0 +1,228 @@
+"""Causes x severities x contexts -> what every sensor and meter would show: the one table both halves share.
+
+Each context is factored once per rewiring; severities and unknown facts are closed forms over ports on those factors.
+"""
+
+from __future__ import annotations
+
+import itertools
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+
+from strayline import contexts, solve
+from strayline.catalogue.causes import CAUSE, CAUSES
+from strayline.causes import Effect, Fault, Shunt, effect, own_parts, severities
+from strayline.components import CONNECTORS, SYSTEMS
+from strayline.installation import EARTH, Installation, Part, base, build
+from strayline.network import Network, nodes
+
+ROLES = ("feeder", "pedestal", "aboard")
+INFINITE_OHMS = 1e12
+
+
+@dataclass(frozen=True, slots=True)
+class Latent:
+    """One value of an unknown fact: its share, and the shunts that make it true in the network."""
+
+    name: str
+    value: str
+    share: float
+    shunts: tuple[Shunt, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Point:
+    """One cause at one severity under one value of each unknown network fact; `share` is its part of the cause's prior."""
+
+    cause: str
+    fault: Fault
+    latents: tuple[Latent, ...]
+    share: float
+
+
+@dataclass(frozen=True, slots=True)
+class Watch:
+    """A sensor in a context: its part id, its role and its device key, with the case's own operating band where stated (mA)."""
+
+    id: str
+    role: str
+    device: str
+    non_operating_ma: float | None
+    operating_ma: float | None
+    rated_a: float
+
+
+@dataclass(frozen=True, slots=True)
+class Outlook:
+    """What would be seen at one point in one context.
+
+    residual_a  -- magnitude at each watch, A RMS
+    loop_s      -- magnitude of the common-mode admittance of the loop through each watch's window, siemens
+    line_a      -- largest line current at each watch, A RMS
+    readings    -- named probes: amperes, ohms or volts
+    """
+
+    residual_a: tuple[float, ...]
+    loop_s: tuple[float, ...]
+    line_a: tuple[float, ...]
+    readings: dict[str, float]
+
+
+@dataclass(slots=True)
+class Predictions:
+    """Every point of one installation, and the outlook of each in any context, worked out when first asked for."""
+
+    installation: Installation
+    points: tuple[Point, ...]
+    _cache: dict[str, tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None] = field(default_factory=dict)
+
+    def outlooks(self, context: str) -> tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None:
+        """The watches of a context and the outlook of every point; None when the stated parts cannot make this context."""
+        if context not in self._cache:
+            self._cache[context] = _outlooks(self.installation, self.points, context)
+        return self._cache[context]
+
+
+def predictions(installation: Installation, latents: Sequence[Sequence[Latent]]) -> Predictions:
+    """All points of an installation: causes that can be there, their severities, and every combination of unknown facts."""
+    system = SYSTEMS[installation.of_kind("supply")[0].text("system")]
+    points = []
+    for cause in CAUSES:
+        for severity in severities(cause.id, installation, system.volts):
+            for combination in itertools.product(*latents):
+                share = severity.weight
+                for latent in combination:
+                    share *= latent.share
+                if share > 0:
+                    points.append(Point(cause.id, severity.fault, tuple(combination), share))
+    return Predictions(installation, tuple(points))
+
+
+def cause_weights(predicted: Predictions) -> dict[str, float]:
+    """Prior weight of each cause that can be there, by region; where a Y is in use the arrangement explains itself first."""
+    system = SYSTEMS[predicted.installation.of_kind("supply")[0].text("system")]
+    present = dict.fromkeys(point.cause for point in predicted.points)
+    weights = {cause: CAUSE[cause].prior_50 if system.region == "50" else CAUSE[cause].prior_60 for cause in present}
+    arranged = sum(weights[cause] for cause in present if CAUSE[cause].kind == "arrangement")
+    faults = sum(weights[cause] for cause in present if CAUSE[cause].kind == "fault")
+    return {cause: weight if CAUSE[cause].kind == "arrangement" else weight / faults * (1 - arranged) for cause, weight in weights.items()}
+
+
+def watches(installation: Installation) -> tuple[Watch, ...]:
+    """The devices that watch the own boat: the dock feeder's, its receptacles', its mains'."""
+    mine = own_parts(installation)
+    found: list[tuple[str, Part]] = [("feeder", part) for part in installation.of_kind("feeder")]
+    found += [("pedestal", part) for part in mine if part.kind == "receptacle" and installation.children(part.id)]
+    found += [("aboard", part) for part in mine if part.kind == "main"]
+    return tuple(
+        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), rated_a(part)) for role, part in found
+    )
+
+
+def rated_a(part: Part) -> float:
+    """Rated amperes of a receptacle's breaker (0 for other parts)."""
+    if part.kind != "receptacle":
+        return 0.0
+    return part.number("rated_a") or CONNECTORS[part.text("connector")].rated_a
+
+
+def _outlooks(installation: Installation, points: tuple[Point, ...], context: str) -> tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None:
+    made = contexts.setting(context, installation)
+    if made is None:
+        return None
+    base_network = build(made)
+    effects: dict[Fault, Effect] = {}
+    prepared: dict[Network, _Prepared] = {}
+    name = context.partition(":")[0]
+    watched = () if name in contexts.DEAD else watches(made)
+    found: list[Outlook] = []
+    for point in points:
+        made_effect = effects.get(point.fault)
+        if made_effect is None:
+            made_effect = effects[point.fault] = effect(made, base_network, point.fault)
+        ready = prepared.get(made_effect.network)
+        if ready is None:
+            ready = prepared[made_effect.network] = _Prepared(made, contexts.switched(context, made, made_effect.network), watched, name)
+        shunts = [shunt for shunt in made_effect.shunts if name not in shunt.absent_in]
+        shunts += [shunt for latent in point.latents for shunt in latent.shunts if name not in shunt.absent_in]
+        found.append(ready.outlook(shunts))
+    return watched, tuple(found)
+
+
+class _Prepared:
+    """One rewired network in one context: factored once, with every probe that the context reads."""
+
+    def __init__(self, installation: Installation, network: Network, watched: tuple[Watch, ...], context: str) -> None:
+        self.nodes = frozenset(nodes(network))
+        self.factors = solve.factor(network)
+        self.watched = watched
+        self.context = context
+        present = {branch.id for branch in network.branches}
+        self.lines = [tuple(f"{watch.id}.{line}" for line in ("L1", "L2") if f"{watch.id}.{line}" in present) for watch in watched]
+        self.names: list[str] = []
+        self.probes = [solve.probe_residual(self.factors, watch.id) for watch in watched]
+        self.probes += [solve.probe_current(self.factors, [(line, 1)]) for lines in self.lines for line in lines]
+        for reading, probe in self._readings(installation, network, present):
+            self.names.append(reading)
+            self.probes.append(probe)
+        self.continuity = _continuity(installation, self.factors, self.nodes) if context == "cord_in_hand" else {}
+        self.seen: dict[tuple[Shunt, ...], Outlook] = {}
+
+    def _readings(self, installation: Installation, network: Network, present: set[str]) -> list[tuple[str, solve.Probe]]:
+        found = []
+        mine = own_parts(installation)
+        cord = next((part.id for part in mine if part.kind == "cord"), None)
+        if self.context == contexts.AS_FOUND and cord:
+            live = [(f"{cord}.{name}", 1) for name in ("L1", "L2", "N") if f"{cord}.{name}" in present]
+            ground = [(f"{cord}.G", 1)] if f"{cord}.G" in present else []
+            found += [("cord_sum_a", solve.probe_current(self.factors, live + ground)), ("live_sum_a", solve.probe_current(self.factors, live))]
+            found.append(("ground_a", solve.probe_current(self.factors, ground)))
+            found += [(f"hull:{hull}", solve.probe_voltage(self.factors, node, EARTH)) for hull, node in network.hulls if node in self.nodes]
+        if contexts.METER in present:
+            found.append(("meter_a", solve.probe_current(self.factors, [(contexts.METER, 1)])))
+        return found
+
+    def outlook(self, shunts: Sequence[Shunt]) -> Outlook:
+        here = tuple(shunt for shunt in shunts if shunt.a in self.nodes and shunt.b in self.nodes)
+        if self.context in contexts.DEAD:
+            here = tuple(shunt for shunt in here if shunt.kind != "filter")
+        if here not in self.seen:
+            self.seen[here] = self._outlook([(shunt.a, shunt.b, complex(shunt.ohms)) for shunt in here])
+        return self.seen[here]
+
+    def _outlook(self, shunts: list[solve.Shunt]) -> Outlook:
+        values = solve.sweep(self.factors, self.probes, shunts)
+        count = len(self.watched)
+        residual = tuple(abs(value) for value in values[:count])
+        loop = tuple(abs(solve.window_admittance(self.factors, watch.id, shunts)) for watch in self.watched)
+        line, place = [], count
+        for lines in self.lines:
+            line.append(max((abs(value) for value in values[place : place + len(lines)]), default=0.0))
+            place += len(lines)
+        readings = {name: abs(value) if value == value else 0.0 for name, value in zip(self.names, values[place:], strict=True)}
+        if "meter_a" in readings:
+            current = readings.pop("meter_a")
+            readings["meter_ohm"] = min(contexts.METER_VOLTS / current - contexts.METER_OHMS, INFINITE_OHMS) if current > 1e-12 else INFINITE_OHMS
+        readings |= self.continuity
+        return Outlook(residual, loop, tuple(line), readings)
+
+
+def _continuity(installation: Installation, factors: solve.Factors, present: frozenset[str]) -> dict[str, float]:
+    """Ohms end to end of the cord (and adapter) in the hand: neutral to neutral, neutral to far ground, ground to ground."""
+    mine = own_parts(installation)
+    cords = [part for part in mine if part.kind in ("cord", "adapter")]
+    if not cords:
+        return {}
+    near = base(cords[0].parents[0]) or f"{cords[0].id}.plug"
+    far = next(part.id for part in reversed(mine) if part.kind == "cord")
+
+    def ohms(start: str, end: str) -> float:
+        if start not in present or end not in present:
+            return INFINITE_OHMS
+        return min(abs(factors.port_impedance(start, end)), INFINITE_OHMS)
+
+    return {
+        "neutral_through": ohms(f"{near}.N", f"{far}.N"),
+        "neutral_to_ground": ohms(f"{near}.N", f"{far}.G"),
+        "ground_through": ohms(f"{near}.G", f"{far}.G"),
+    }

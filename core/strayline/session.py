@@ -1,0 +1,334 @@
+"""replay(answers) -> Session: facts, hypotheses, posterior, what to ask or test next. Pure; it keeps no memory of a case.
+
+The tables of a set-up are cached by the facts that make them, so a changed answer that leaves the set-up alone costs only the
+inference. A fresh process returns the same session.
+"""
+
+from __future__ import annotations
+
+import dataclasses
+import functools
+import json
+import math
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from strayline import arrangements, contexts, likelihood, solve
+from strayline.catalogue.causes import CAUSE
+from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
+from strayline.catalogue.tests import ROLES, TEST, TESTS, TOOLS, Test
+from strayline.causes import Shunt
+from strayline.errors import RequestError
+from strayline.installation import EARTH, Installation, read
+from strayline.likelihood import LIMITS, Evidence
+from strayline.next_test import NAMED, Candidate, choose, leading_group, stop, verification
+from strayline.posterior import cause_marginal, hypotheses_of, misfit, posterior
+from strayline.predict import Latent, predictions
+from strayline.units import QuantityError, parse_quantity
+
+CANNOT = "cannot"
+FIXED = "fixed"
+SETUP = ("role", "tools", "supply", "plug", "pedestal_device", "aboard_device")  # facts that choose tables or tests, not evidence
+LOOKS = ("afloat", "neighbour", "inverter")  # facts that are evidence about latents, asked when they tell something
+FIXED_WEIGHT = 0.05  # what is left of a cause's prior after it was fixed
+LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
+DANGEROUS_HULL_VOLTS = 50.0  # conventional touch-voltage limit, IEC 60364-4-41
+DANGER_SHARE = 0.05
+HOMEMADE_WEIGHT = {"ground_neutral_exchanged": 6.0, "line_ground_exchanged": 40.0, "open_ground_with_leak": 4.0}
+FREE_MINUTES = 0.3
+
+
+@dataclass(frozen=True, slots=True)
+class Answer:
+    """One answer as it was given; `seq` orders, `at` is for display only."""
+
+    question: str
+    subject: str | None
+    value: str
+    seq: int
+    at: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Problem:
+    """An answer that cannot be taken: the question is asked again with this said. `key` names the sentence, `fields` fill it."""
+
+    answer: Answer
+    key: str
+    fields: dict[str, str]
+
+
+@dataclass(frozen=True, slots=True)
+class Observation:
+    """One report that counts: its answer, its likelihood vector, how many outcomes it could have had."""
+
+    answer: Answer
+    likelihood: tuple[float, ...]
+    outcomes: int
+
+
+@dataclass(frozen=True, slots=True)
+class Session:
+    """Everything known after the answers.
+
+    ask     -- the question (and its subject) to put now, or None
+    test    -- the test to propose now, or None
+    verdict -- why it stops ("named", "group", "nothing_now", "unknown", "danger") or None
+    halted  -- the sign or "unknown"/"not_clear" that stopped everything at the gate, or None
+    """
+
+    answers: tuple[Answer, ...]
+    facts: Mapping[str, str]
+    problem: Problem | None = None
+    halted: str | None = None
+    ask: tuple[str, str | None] | None = None
+    test: str | None = None
+    verdict: str | None = None
+    group: tuple[str, ...] = ()
+    evidence: Evidence | None = None
+    weights: tuple[float, ...] = ()
+    prior: tuple[float, ...] = ()
+    observations: tuple[Observation, ...] = ()
+    marginal: Mapping[str, float] | None = None
+    misfits: tuple[int, ...] = ()
+    tests_done: int = 0
+    refused: tuple[str, ...] = ()
+
+
+def replay(answers: Sequence[Answer], installation: object = None) -> Session:
+    """The session after these answers, in `seq` order. `installation` is a case file's raw section, when there is one.
+
+    Raises RequestError for answers that are not of the protocol's form; an unknown question is one.
+    """
+    ordered = tuple(sorted(answers, key=lambda answer: answer.seq))
+    for answer in ordered:
+        if answer.question not in QUESTION and answer.question not in TEST and answer.question != FIXED:
+            raise RequestError(f"no such question: {answer.question[:40]!r}", question=answer.question[:40])
+    problem = next((found for answer in ordered if (found := _problem(answer))), None)
+    facts = _facts(ordered)
+    halted = _halted(ordered)
+    if halted:
+        return Session(ordered, facts, problem, halted)
+    if not any(answer.question == GATE.id for answer in ordered):
+        return Session(ordered, facts, problem, ask=(GATE.id, None))
+    if problem:
+        question = problem.answer.question
+        where = {"test": question} if question in TEST else {"ask": (question, problem.answer.subject)}
+        return Session(ordered, facts, problem, **where)  # type: ignore[arg-type]
+    epoch, fixed = _epoch(ordered)
+    given = {answer.question for answer in ordered} if not fixed else {answer.question for answer in ordered} | {"opened", "when"}
+    for question in QUESTIONS:
+        if question.opening and question.id not in given and _applies(question.id, facts, installation):
+            return Session(ordered, facts, ask=(question.id, None))
+    return _inferred(ordered, facts, epoch, fixed, installation)
+
+
+def _problem(answer: Answer) -> Problem | None:
+    """What is wrong with an answer's value, if anything."""
+    if answer.value in (UNKNOWN, CANNOT) or answer.question == FIXED:
+        known = answer.question != FIXED or answer.subject in CAUSE
+        return None if known else Problem(answer, "problem.unknown_choice", {})
+    test = TEST.get(answer.question)
+    if test is not None and test.model == "number":
+        try:
+            parse_quantity(answer.value, test.unit, *LIMITS[test.unit])
+        except QuantityError as error:
+            return Problem(answer, "", {"sentence": error.message})
+        return None
+    choices = test.outcomes if test is not None else QUESTION[answer.question].choices
+    if not answer.value.strip():
+        return Problem(answer, "problem.no_choice", {})
+    return None if answer.value in choices else Problem(answer, "problem.unknown_choice", {})
+
+
+def _halted(ordered: Sequence[Answer]) -> str | None:
+    """The sign that stops everything: the last gate answer, or a line before power that was not clear. "I don't know" counts as yes."""
+    gate = [answer.value for answer in ordered if answer.question == GATE.id]
+    if gate and gate[-1] != "none":
+        return gate[-1] if gate[-1] in GATE.choices else UNKNOWN
+    for answer in ordered:
+        if answer.question == CLEAR.id and answer.value != "clear":
+            return "not_clear"
+    return None
+
+
+def _facts(ordered: Sequence[Answer]) -> dict[str, str]:
+    return {answer.question: answer.value for answer in ordered if answer.question in SETUP and _problem(answer) is None}
+
+
+def _applies(question: str, facts: Mapping[str, str], installation: object) -> bool:
+    if installation is not None and question in ("supply", "plug", "pedestal_device", "aboard_device"):
+        return False
+    return question != "tools" or facts.get("role") in ROLES
+
+
+def _epoch(ordered: Sequence[Answer]) -> tuple[int, tuple[str, ...]]:
+    """The seq after which reports count, and the causes fixed so far."""
+    fixes = [answer for answer in ordered if answer.question == FIXED]
+    return (fixes[-1].seq if fixes else -1), tuple(answer.subject or "" for answer in fixes)
+
+
+# --- inference -----------------------------------------------------------------------------------------------------
+
+
+@functools.lru_cache(maxsize=16)
+def _evidence(facts: tuple[tuple[str, str], ...], installation_json: str) -> Evidence:
+    """The hypotheses and tables of one set-up, kept for the next answer."""
+    stated = dict(facts)
+    if installation_json:
+        return likelihood.evidence([(predictions(read(json.loads(installation_json)), [inverter_latents()]), 1.0)], stated)
+    found = []
+    for arrangement in arrangements.possible(stated):
+        installation = read(arrangements.parts(arrangement, stated, neighbour=False, afloat=False))
+        found.append((predictions(installation, latents(installation)), arrangement.share))
+    return likelihood.evidence(found, stated)
+
+
+def latents(installation: Installation) -> list[list[Latent]]:
+    """The unknown facts of a typical set-up, as shunts: afloat or ashore, a neighbour's load running, an inverter aboard."""
+    hull = installation.part("hull")
+    water = Shunt("water", "hull.metal", EARTH, complex(hull.number("water_ohms") or 1.0), "water", "hull")
+    next_door = Shunt("next_door", "panel9.L1", "stove9.in", 0.002 + 0j, "line", "stove9")
+    return [
+        [Latent("afloat", "afloat", 0.93, (water,)), Latent("afloat", "ashore", 0.07)],
+        [Latent("neighbour", "yes", 0.5, (next_door,)), Latent("neighbour", "no", 0.5)],
+        inverter_latents(),
+    ]
+
+
+def inverter_latents() -> list[Latent]:
+    """An inverter's own bond is closed while shore power is away: it is seen only with the cord out."""
+    relay = Shunt("idle_relay", "panel.N", "panel.G", 0.05 + 0j, "bond", "panel", contexts.ENERGISED)
+    return [Latent("inverter", "yes", 0.3, (relay,)), Latent("inverter", "no", 0.7)]
+
+
+def _prior(evidence: Evidence, facts: Mapping[str, str], fixed: Sequence[str]) -> tuple[float, ...]:
+    """Prior of every hypothesis: less of what was fixed, more of what home-made wiring brings."""
+    factor = {cause: FIXED_WEIGHT for cause in fixed}
+    if facts.get("plug") == "homemade":
+        factor |= HOMEMADE_WEIGHT
+    weights = list(evidence.hypotheses.prior)
+    for index in range(len(weights)):
+        point = evidence.point(index)
+        weights[index] *= factor.get(point.cause, 1.0)
+        if point.cause == "inverter_bond" and any(latent.name == "inverter" and latent.value == "no" for latent in point.latents):
+            weights[index] *= 1e-6
+    total = math.fsum(weights)
+    return tuple(weight / total for weight in weights)
+
+
+def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fixed: tuple[str, ...], installation: object) -> Session:
+    setup = tuple(sorted((name, value) for name, value in facts.items() if name not in ("role", "tools")))
+    evidence = _evidence(setup, "" if installation is None else json.dumps(installation, sort_keys=True))
+    prior = _prior(evidence, facts, fixed)
+    hypotheses = hypotheses_of([evidence.hypotheses.causes[cause] for cause in evidence.hypotheses.cause_of], prior)
+    observations = tuple(found for answer in ordered if (found := _observation(evidence, answer, epoch)))
+    weights = posterior(hypotheses, [observation.likelihood for observation in observations])
+    marginal = cause_marginal(hypotheses, weights)
+    misfits = misfit(hypotheses, weights, [one.likelihood for one in observations], [one.outcomes for one in observations])
+    done = {answer.question for answer in ordered if answer.seq > epoch and answer.question in TEST}
+    looked = {answer.question for answer in ordered if answer.question in LOOKS}
+    tests = [test for test in TESTS if test.id not in done and not refusal(test, facts, evidence, weights)]
+    candidates = [Candidate(test.id, test.minutes, outcomes) for test in tests if (outcomes := evidence.outcomes("test", test.id))]
+    looks = [Candidate(look, FREE_MINUTES, outcomes) for look in LOOKS if look not in looked and (outcomes := evidence.outcomes("question", look))]
+    physical = sum(answer.question in TEST and answer.value not in (UNKNOWN, CANNOT) for answer in ordered if answer.seq > epoch)
+    session = Session(
+        ordered, facts, evidence=evidence, weights=weights, prior=prior, observations=observations, marginal=marginal, misfits=misfits,
+        tests_done=physical, refused=tuple(test.id for test in TESTS if test.id not in done and test not in tests),
+    )  # fmt: skip
+    if _dangerous(evidence, weights):
+        return _with(session, verdict="danger")
+    why = stop(hypotheses, weights, candidates, physical, len(misfits))
+    if why:
+        return _with(session, verdict=why, group=leading_group(hypotheses, weights, candidates) if why == "group" else ())
+    leader = max(marginal, key=marginal.__getitem__)
+    chosen = choose(hypotheses, weights, [*candidates, *looks], first="without_y")
+    if marginal[leader] >= NAMED and chosen and chosen.id != "without_y":
+        return _with(session, test=verification(hypotheses, weights, candidates, leader))
+    if chosen is None:
+        return _with(session, verdict="unknown")
+    if chosen.id in LOOKS:
+        return _with(session, ask=(chosen.id, None))
+    return _with(session, test=chosen.id)
+
+
+def _with(session: Session, **changes: object) -> Session:
+    """The session with its next step; before a test that restores power the gate is asked again in one line."""
+    test = changes.get("test")
+    if isinstance(test, str) and TEST[test].energises:
+        cleared = any(answer.question == CLEAR.id and answer.subject == test and answer.value == "clear" for answer in session.answers)
+        if not cleared:
+            changes["ask"] = (CLEAR.id, test)
+    return dataclasses.replace(session, **changes)  # type: ignore[arg-type]
+
+
+def _observation(evidence: Evidence, answer: Answer, epoch: int) -> Observation | None:
+    """The likelihood of one answer, or None when it says nothing about the cause."""
+    if answer.value in (UNKNOWN, CANNOT) or answer.question in (*SETUP, GATE.id, CLEAR.id, FIXED):
+        return None
+    if answer.question not in LOOKS and answer.seq < epoch:
+        return None
+    test = TEST.get(answer.question)
+    outcomes = evidence.outcomes("test" if test else "question", answer.question)
+    if outcomes is None:
+        return None
+    if test is not None and test.model == "number":
+        value = parse_quantity(answer.value, test.unit, *LIMITS[test.unit])
+        return Observation(answer, evidence.reading(test, value), len(outcomes))
+    return Observation(answer, outcomes[answer.value], len(outcomes))
+
+
+def _dangerous(evidence: Evidence, weights: Sequence[float]) -> bool:
+    """Whether the boat's metal stands at a dangerous voltage in more than a small share of what is still possible."""
+    live = 0.0
+    for (where, number, _), weight in zip(evidence.members, weights, strict=True):
+        found = evidence.predicted[where].outlooks(contexts.AS_FOUND)
+        if found and found[1][number].readings.get("hull:hull", 0.0) > DANGEROUS_HULL_VOLTS:
+            live += weight
+    return live > DANGER_SHARE
+
+
+# --- who may do what -----------------------------------------------------------------------------------------------
+
+
+def refusal(test: Test, facts: Mapping[str, str], evidence: Evidence, weights: Sequence[float]) -> str | None:
+    """Why a test may not be proposed to this person here: "role", "tool", "need" or "live_blades"; None when it may."""
+    role = facts.get("role", UNKNOWN)
+    if (role if role in ROLES else "user") not in test.roles:
+        return "role"
+    tool = facts.get("tools", UNKNOWN)
+    if TOOLS.index(test.tool) > (TOOLS.index(tool) if tool in TOOLS else 0):
+        return "tool"
+    if any(not _holds(need, facts, evidence, weights) for need in test.needs):
+        return "need"
+    if test.energises and any(_live_blades(one.installation, test.context) for one in evidence.predicted):
+        return "live_blades"
+    return None
+
+
+def _holds(need: str, facts: Mapping[str, str], evidence: Evidence, weights: Sequence[float]) -> bool:
+    plug = facts.get("plug", UNKNOWN)
+    if need == "pedestal_device":
+        return facts.get("pedestal_device") in ("device_30", "class_a")
+    if need == "plain_cord":
+        return plug in ("one_cord", "one_cord_four_wire")
+    if need == "known_wiring":
+        return plug != "homemade"
+    if need == "y_in_use":
+        return plug == "combining_y"
+    if need == "inverter":
+        known = [latent.value == "yes" for index in range(len(weights)) for latent in evidence.point(index).latents if latent.name == "inverter"]
+        return bool(known) and math.fsum(weight for weight, yes in zip(weights, known, strict=False) if yes) > 0.2
+    raise ValueError(f"no such need: {need}")
+
+
+@functools.lru_cache(maxsize=256)
+def _live_blades_of(network: solve.Network) -> bool:
+    solution = solve.solve(network)
+    return any(abs(solution.voltage(blade.node) or 0.0) > LIVE_BLADE_VOLTS for blade in network.blades)
+
+
+def _live_blades(installation: Installation, context: str) -> bool:
+    """Whether the state a test leaves would put voltage on a bare blade, with every load aboard switched on."""
+    left = contexts.left_behind(context, installation)
+    return left is not None and _live_blades_of(left)
