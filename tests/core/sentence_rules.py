@@ -2,7 +2,8 @@
 
 Written apart from the catalogue: it shares no code and no word lists with the core. It reads English by pattern, so it is strict
 rather than clever: a clause that names a hazard must itself carry the "never" or "do not" that forbids it; a negation one comma
-away does not count.
+away does not count. Patterns are a net, not a reader: whoever adds a sentence also reads it against the safety rules, and whoever
+finds a bad one that slips through plants it in test_words.py.
 """
 
 from __future__ import annotations
@@ -47,15 +48,19 @@ CLAUSE_RULES: tuple[Rule, ...] = (
         r"\b(?:all clear|all is well|all good|good to go|out of danger|in the clear)\b",
         r"\b(?:is|are|looks?|seems?|reads?|be) (?:perfectly |quite |all )?(?:fine|ok|okay|all right|alright)\b",
         r"\b(?:fine|ok|okay|free) to (?:use|swim|plug|touch|stay|sleep)\b",
-        r"\b(?:can|may|could) (?:now |all )?(?:swim|go swimming|relax|sleep well)\b",
+        r"\b(?:can|may|could) (?:\S+ ){0,4}?(?:swim|go swimming|relax|sleep well)\b",
         r"\b(?:danger|risk|hazard) (?:is|has) (?:over|past|passed|gone)\b",
+        r"\b(?:clear|free) of (?:danger|current|leaks?|faults?)\b",
+        r"\bwith confidence\b|\bis sound\b|\bin (?:good|perfect) (?:order|shape|condition)\b",
+        r"\b(?:boat|dock|wiring|cord|outlet|water)s? (?:has |have )?(?:pass|passed|passes|checks out|check out)\b",
     ),
     _rule(
         "called safe",
         r"\b(?:safer|safest)\b",
         r"\bno (?:danger|risk|hazard|harm)\b",
         r"\b(?:not|isn't|hardly|never) (?:at all )?(?:unsafe|dangerous|harmful|hazardous|deadly)\b",
-        r"\bnothing (?:is )?(?:wrong|to worry|to fear|dangerous)\b",
+        r"\bnothing (?:is )?(?:wrong|to worry|to fear|dangerous|leaks|leaking)\b",
+        r"\b(?:nobody|no one) (?:can|will|could) (?:get|be) (?:hurt|shocked|killed)\b",
         r"\b(?:do not|don't|no need to|never) worry\b",
         r"\bthere(?:'s| is| are) no (?:fault|leak|leaks|leakage)\b(?! now)",
         r"\bno leak(?:age)?\b(?! now\b)",
@@ -63,19 +68,22 @@ CLAUSE_RULES: tuple[Rule, ...] = (
     ),
     _rule(
         "lifts a ground",
-        r"\b(?:lift|cut|snip|clip|remove|break|bend|disconnect|detach|unhook|unscrew|undo|float|isolate|omit|skip|loosen|pull|take|saw|file|tape)"
+        r"\b(?:lift|cut|snip|clip|remove|break|bend|disconnect|detach|unhook|unscrew|undo|float|isolate|omit|skip|loosen|pull|take|saw|file|tape|unplug)"
         rf"(?:s|ting|ing)?\b(?: \S+){{0,4}}? {_GROUND}",
         rf"\b{_GROUND}.{{0,25}}\b(?:lifted|removed|cut|disconnected|taped|snipped|bent|broken off|left (?:off|out|open))\b",
         rf"\bleave (?:the |its )?{_GROUND}.{{0,12}}\b(?:off|out|open|loose|disconnected)\b",
         rf"\bwithout (?:the |its |a |any )?{_GROUND}",
+        r"\b(?:lift|cut|snip|clip|remove|break|bend|saw|file|without)\b(?: \S+){0,3} (?:third|round) (?:pin|prong|blade)\b",
         r"\b(?:two|2|three-to-two)[- ](?:prong|pin|wire) adapter\b",
     ),
     _rule(
         "bypasses a device",
         r"\b(?:by-?pass\w*|jumper\w*|bridg(?:e|es|ed|ing)|defeat\w*|disabl\w*|overrid\w*|overrode|cheat\w*|hot-?wir\w*)\b",
-        r"\bshort(?:s|ing)? (?:out|across|past)\b",
+        r"\bshort(?:s|ing)? (?:out|across|past)\b|^\W*short\b|\bwedg(?:e|es|ing)\b",
         rf"\b(?:hold|tape|wedge|tie|jam|block|glue|force)\b(?: \S+){{0,2}} {_DEVICE}\b",
         r"\btake (?:the |that )?(?:\S+ )?device out of (?:the )?circuit\b",
+        rf"^\W*(?:wire|connect|feed|run)\b(?: \S+){{0,4}} (?:around|past) (?:the )?(?:\S+ )?{_DEVICE}\b",
+        rf"^\W*past the {_DEVICE}\b",
     ),
     _rule(
         "up-rates a device",
@@ -83,6 +91,9 @@ CLAUSE_RULES: tuple[Rule, ...] = (
         rf"\b(?:bigger|larger|higher|stronger|heavier|slower)(?:[- ]rated)? (?:\S+ )?(?:{_DEVICE}|one|rating|setting)\b",
         r"\b(?:raise|increase|turn up|dial up|widen)\b(?: \S+){0,2} (?:trip|rating|setting|limit|threshold)\b",
         r"\bless sensitive\b",
+        r"\bsensitivity\b",
+        r"\b(?:swap|replace|change)\b.{0,40}\b(?:for|with|by) (?:a |an |one of )?\d+ ?A\b",
+        r"\b(?:put in|fit|install) (?:a |an )?\d+ ?m?A\b",
         r"\b(?:100|300|500) ?mA\b.{0,30}\b(?:instead|in its place)\b",
         r"\b(?:replace|swap)\b.{0,40}\b(?:with|by|for) (?:a |an |one of )?(?:100|300|500) ?mA\b",
     ),
@@ -98,11 +109,16 @@ CLAUSE_RULES: tuple[Rule, ...] = (
         r"\b(?:one|either) of (?:the |your |both |its )?(?:two |shore )*(?:cords|plugs|tails|legs)\b",
         r"\b(?:leave|let) (?:the )?(?:other|second|loose) (?:\S+ )?(?:tail|plug|cord|end|leg)\b",
         r"\b(?:try|unplug|plug in|connect|power|energi[sz]e) (?:with )?(?:just |only )?one (?:cord|tail|leg)\b",
+        r"\b(?:one|either) of (?:the |a )?(?-i:Y)'s\b|\bone breaker (?:of|on|for) the (?-i:Y)\b",
+        r"\b(?:only|just) (?:the )?(?:left|right|first|second|one) (?:cord|plug|tail|leg)\b",
+        r"\b(?:first|second|left|right) of the (?:two )?(?:cords|plugs|tails|legs)\b",
         r"\b(?:tails?|legs?|plugs?|cords?) one (?:at a time|by one|after the other)\b",
     ),
     _rule(
         "opens a shore enclosure",
-        rf"\b{_OPENS}(?: (?!from\b|out\b)\S+){{0,5}} {_ENCLOSURE}\b(?!'s| breaker| device)",
+        rf"\b{_OPENS}(?: (?!from\b|out\b)\S+){{0,7}} {_ENCLOSURE}\b(?!'s| breaker| device)",
+        rf"\btake\b(?: \S+){{0,4}} off\b(?: \S+){{0,3}} {_ENCLOSURE}\b|\binside (?:of )?(?:the |a )?(?:dock )?{_ENCLOSURE}\b",
+        r"\b(?:unscrew|unbolt|open|take apart)\b(?: \S+){0,2} (?:outlet|socket|receptacle)\b(?!'s)",
         rf"\bwith (?:the |its )?{_ENCLOSURE}(?:'s)?(?: \S+)? (?:open|opened|off)\b",
     ),
     _rule(
@@ -116,38 +132,48 @@ CLAUSE_RULES: tuple[Rule, ...] = (
         rf"\b(?:measure|meter|touch|read|test|check)\b(?: \S+){{0,4}} {_LIVE}\b",
         r"\b(?:measure|read|meter|test|check)\b(?: \S+){0,5} (?:in|into|at|inside|on|across) (?:the |an? )?(?:\S+ )?"
         r"(?:outlet|receptacle|socket|panel|inlet)\b",
+        r"\b(?:measure|read|meter|test|check)\b(?: \S+){0,4} (?:across|between) (?:the )?(?:\S+ )?(?:blades|pins|slots|terminals|legs)\b",
         r"\b(?:put|stick|push|insert|poke|hold)\b(?: \S+){0,3} (?:leads?|tester|fingers?|screwdriver|wire|meter)\b.{0,20}"
         r"\b(?:outlet|receptacle|socket|slot|slots|pins?|panel|cord)\b",
         owner=True,
     ),
     _rule(
         "resets again",
-        r"\breset(?:s|ting)? (?:it|the|that|your)\b",
+        r"\breset(?:s|ting)? (?:it|the|that|your|twice|again|until|once more)\b",
+        r"\b(?:push|press|flip|switch|turn|put) (?:it|power|the (?:breaker|handle|power|switch))(?: \S+)?"
+        r" (?:back (?:in|on)|(?:up|on) again)\b",
         r"\b(?:turn|switch|put)\b(?: \S+){0,3} on\b.{0,20}\b(?:again|twice|until|repeatedly|a second time|several times)\b",
         r"\bkeep (?:on )?(?:trying|resetting|pressing|turning)\b",
         r"\btry (?:it |that )?(?:again|once more|a second time)\b",
     ),
     _rule(
         "sends someone into the water",
-        r"\b(?:jump|dive) in\b",
+        r"\bjump in\b|\bdive\b|\bstand(?:ing)? in (?:the )?water\b",
         r"\b(?:jump|dive|go|goes|get|climb|wade) in(?:to)? (?:the )?(?:water|sea|lake|harbou?r)\b",
+        r"\b(?:have|send|ask|get) (?:a|the|your) (?:swimmer|diver)\b",
         r"\bswim (?:to|over|out|under|around|near|along)\b",
     ),
     _rule(
         "lends the hazard",
         r"\b(?:plug|try|connect|let|ask|have|get)\b(?: \S+){0,3} (?:another|other|neighbou?r's|someone else's) (?:boat|skipper|owner)\b",
+        r"\b(?:plug|try|connect|let|ask|have|get)\b(?: \S+){0,2} (?:boat|skipper|people|neighbou?rs?) next (?:door|to you)\b",
         r"\b(?:let|ask|have|get)\b(?: \S+){0,2} neighbou?r(?: to)? (?:plug|try|connect)\b",
     ),
     _rule(
         "handles what is hot or wet",
         r"\b(?:pull|unplug|touch|grab|lift)\b(?: \S+){0,2} (?:hot|burnt|burning|melted|live) (?:plug|cord|end|outlet)\b",
-        r"\bwith wet (?:hands|feet)\b",
+        r"\bwith wet (?:hands|feet)\b|\bwith the power (?:still )?on\b",
+        r"\b(?:grab|touch|pull|hold|lift) the (?:person|swimmer|victim)\b",
+        r"\b(?:pull|unplug|connect|plug)\b.{0,20}\bwhile (?:it|the loads?) (?:is |are )?(?:runs|running|on|live)\b",
+        r"\b(?:in|during|through) (?:a|the) thunderstorm\b",
         r"\b(?:pull|unplug)\b.{0,25}\bunder load\b",
     ),
+    _rule("ignores a warning", r"\b(?:ignore|disregard|overlook|silence)\b"),
     _rule(
         "fumes",
         r"\b(?:run|use|start|light|leave)\b(?: \S+){0,4} (?:generator|heater|stove|grill)\b.{0,30}"
-        r"\b(?:sleep\w*|asleep|overnight|cabin|below)\b",
+        r"\b(?:sleep\w*|asleep|overnight|cabin|below)\b|\bto heat the cabin\b",
+        r"\bsleep\b.{0,30}\b(?:generator|heater|stove|grill) (?:running|on|lit)\b",
     ),
 )
 
@@ -165,10 +191,10 @@ _UNPROTECTED = re.compile(
     rf"\b(?:unprotected|ungrounded|non-tripping) {_OUTLET}"
     rf"|\b{_OUTLET}s?\b[^.!?]{{0,40}}?\b(?:without|has no|have no|with no|lacks?|not fitted with)\b"
     r"[^.!?]{0,20}(?:ground-fault|protect|device|test)"
-    rf"|\b{_OUTLET}s?\b.{{0,20}}\b(?:never trips?|(?:does not|doesn't|can't) trip)\b",
+    rf"|\b{_OUTLET}s?\b.{{0,20}}\b(?:never trips?|(?:does not|doesn't|do not|don't|can't) trip)\b",
     re.IGNORECASE,
 )
-_PROPOSES = re.compile(r"\b(?:use|try|move|go|plug|connect|swap|switch|run|take|shift|choose)\b", re.IGNORECASE)
+_PROPOSES = re.compile(r"\b(?:use|try|move|go|plug|connect|swap|switch|run|take|shift|choose|find)\b", re.IGNORECASE)
 
 _BREAK = re.compile(r"[.;:,!?()–—“”…]|\b(?:and|but|then|so|because|until|unless)\b", re.IGNORECASE)
 _CONDITION = re.compile(r"^\W*(?:if|when|where|while|since|once|as)\b", re.IGNORECASE)
@@ -258,11 +284,10 @@ def moves_live(steps: Sequence[str]) -> list[str]:
 
 
 def left_live(steps: Sequence[str]) -> bool:
-    """Whether the last word on the dock breaker is "on"; True too when nothing switched it off."""
-    last = max(
-        (index, found.start(), act) for index, step in enumerate(steps) for pattern, act in _ACTS[:2] for found in pattern.finditer(step)
-    )
-    return last[2] != "post off"
+    """Whether the dock breaker may be on after the last step; true as well when no step switched it off."""
+    marks = [(index, found.start(), act) for index, step in enumerate(steps) for pattern, act in _ACTS for found in pattern.finditer(step)]
+    last = [act for _, _, act in sorted(marks) if act.startswith("post")][-1:]
+    return last != ["post off"]
 
 
 def grade(texts: Iterable[str]) -> float:

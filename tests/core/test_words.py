@@ -220,6 +220,32 @@ BAD = {
     "Plug another boat in here.": "lends the hazard",
     "Pull the hot plug at once.": "handles what is hot or wet",
     "Run the generator in the cabin overnight.": "fumes",
+    "This boat has passed.": "called safe",
+    "You may let the children swim.": "called safe",
+    "It holds, so the boat is sound.": "called safe",
+    "Nothing is leaking.": "called safe",
+    "Snip off the third pin.": "lifts a ground",
+    "Unplug the ground wire at the inlet.": "lifts a ground",
+    "The ground pin can be cut off.": "lifts a ground",
+    "Connect straight to the bus, past the breaker.": "bypasses a device",
+    "Take the ground-fault device out of the circuit.": "bypasses a device",
+    "Wedge a match under the handle.": "bypasses a device",
+    "Swap the breaker for one of 50 A.": "up-rates a device",
+    "Ask the marina to turn the sensitivity down.": "up-rates a device",
+    "Find an older post; those do not trip.": "unprotected outlet",
+    "Run an extension from an unprotected circuit.": "unprotected outlet",
+    "Pull out one of the Y's plugs.": "one tail of a Y",
+    "Energise only the left cord of the pair.": "one tail of a Y",
+    "Switch on one breaker of the Y.": "one tail of a Y",
+    "Take the lid off the dock post.": "opens a shore enclosure",
+    "Measure across the blades.": "probes something live",
+    "Push the handle up again.": "resets again",
+    "Reset twice before you give up.": "resets again",
+    "Have a swimmer look at it.": "sends someone into the water",
+    "Ask the boat next door to try your outlet.": "lends the hazard",
+    "Unplug it while it is running.": "handles what is hot or wet",
+    "Grab the person at once.": "handles what is hot or wet",
+    "Ignore the polarity light.": "ignores a warning",
 }
 
 GOOD = (
@@ -294,6 +320,14 @@ def test_nothing_is_moved_live_and_the_end_is_dark(test: Test) -> None:
 def test_the_order_check_catches_a_live_move(steps: tuple[str, ...]) -> None:
     """Each planted list in which something moves too early is caught."""
     assert rules.moves_live(steps)
+
+
+@pytest.mark.parametrize(
+    "steps", [("Look at the cord.",), ("Turn off the breaker on the dock post.", "Turn on the breaker on the dock post, once.")]
+)
+def test_the_order_check_catches_a_live_end(steps: tuple[str, ...]) -> None:
+    """A list that leaves the dock breaker on, or never turns it off, counts as left live."""
+    assert rules.left_live(steps)
 
 
 def test_plugging_in_and_out_follow_the_order_of_hands() -> None:
