@@ -293,7 +293,7 @@ def left_live(steps: Sequence[str]) -> bool:
 def grade(texts: Iterable[str]) -> float:
     """Flesch-Kincaid grade level: 0.39 words/sentences + 11.8 syllables/words - 15.59 (Kincaid et al. 1975); syllables by vowel groups."""
     joined = " ".join(texts)
-    sentences = max(1, len(re.findall(r"[.!?:;](?=\s|$)", joined)))
+    sentences = max(1, len(re.findall(r"[.!?](?=\s|$)", joined)))
     words = re.findall(r"[A-Za-z][A-Za-z'’]*", joined)
     return 0.39 * len(words) / sentences + 11.8 * sum(map(_syllables, words)) / len(words) - 15.59
 
