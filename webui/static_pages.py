@@ -58,17 +58,22 @@ def _signs(gate: Mapping[str, Any]) -> str:
 def _sheets(sections: Mapping[str, Any]) -> str:
     page, stop, tonight, cautions = (sections[name] for name in ("page", "stop", "tonight", "cautions"))
     home = f'<p class="steer"><a class="quiet return" href="#home">{escape(page["return"])}</a></p>'
-    everywhere = f"<h3>{escape(page['stop_always'])}</h3><ul>{_items(stop['lead'])}</ul>"
+    always = f'<div class="always"><h3>{escape(page["stop_always"])}</h3><ul>{_items(stop["lead"])}</ul></div><div data-reply></div>'
     onward = f'<p class="steer"><a class="quiet" href="#gate">{escape(page["gate_again"])}</a></p>'
     # The general sheet asks which sign it is; a sign's own sheet gives its orders first, then those that always hold.
     sheets = [
-        _sheet("stop", "stop", stop["title"], f"<ul>{_items(stop['lead'])}</ul>{_signs(sections['gate'])}{home}"),
+        _sheet("stop", "stop", stop["title"], f'<ul class="orders">{_items(stop["lead"])}</ul>{_signs(sections["gate"])}{home}'),
         *(
-            _sheet(f"stop-{sign}", "stop", orders["title"], f"<ol>{_items(orders['orders'])}</ol>{everywhere}<div data-reply></div>{onward}")
+            _sheet(f"stop-{sign}", "stop", orders["title"], f'<ol class="orders">{_items(orders["orders"])}</ol>{always}{onward}')
             for sign, orders in stop["signs"].items()
         ),
-        _sheet("tonight", "tonight", tonight["title"], f"{_paragraphs(tonight['lead'])}<ul>{_items(tonight['orders'])}</ul>{home}"),
-        _sheet("cautions", "cautions", cautions["title"], f"<ul>{_items(cautions['lines'])}</ul>{home}"),
+        _sheet(
+            "tonight",
+            "tonight",
+            tonight["title"],
+            f'{_paragraphs(tonight["lead"])}<ul class="orders">{_items(tonight["orders"])}</ul>{home}',
+        ),
+        _sheet("cautions", "cautions", cautions["title"], f'<ul class="orders">{_items(cautions["lines"])}</ul>{home}'),
     ]
     return "\n".join(sheets)
 

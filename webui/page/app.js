@@ -15,10 +15,29 @@ import { Store } from "./storage.js";
 const WAIT_SHOWN_MS = 250; // an answer sooner than this needs no waiting screen
 const SETTLE_MS = 300; // a second tap meant for the screen before must not answer this one
 
+/** @type {Omit<Screen, "title" | "form">} the rest of a screen that only asks an old question again */
+const ASKED_AGAIN = {
+  kind: "question",
+  lead: [],
+  cautions: [],
+  steps: [],
+  facts: [],
+  why: "",
+  ranking: [],
+  verdict: null,
+  tonight: [],
+  answered: [],
+  assumed: [],
+  progress: "",
+  version: "",
+};
+
 const language = document.documentElement.lang;
-const [main, home, gate, flow, trouble] = ["main", "home", "gate", "flow", "trouble"].map(
-  (id) => /** @type {HTMLElement} */ (document.getElementById(id)),
-);
+const main = part("main");
+const home = part("home");
+const gate = part("gate");
+const flow = part("flow");
+const trouble = part("trouble");
 const store = new Store();
 const engine = new Engine({ onState: hearEngine });
 
@@ -51,7 +70,7 @@ home.addEventListener("click", (event) => {
 });
 addEventListener("hashchange", () => {
   mark();
-  faceHeading(openSheet() ?? home);
+  faceHeading(inSight());
 });
 goOffline();
 engine.start().catch(() => {}); // what went wrong is told by hearEngine
@@ -112,7 +131,7 @@ function look(place) {
   changing = place;
   passed &&= place >= 0;
   draw();
-  faceHeading(home);
+  faceHeading(inSight());
 }
 
 /** Shows where the case stands: the gate and a stop at once, everything else as soon as the engine has said it. */
@@ -120,7 +139,7 @@ async function show() {
   const sign = stoppedBy(held);
   if (sign) location.hash = stopSheet(sign);
   if (atGate()) draw();
-  if (!held.answers.length) return faceHeading(home);
+  if (!held.answers.length) return faceHeading(inSight());
   asked += 1;
   const turn = asked;
   flow.setAttribute("aria-busy", "true");
@@ -148,11 +167,18 @@ function receive(screen) {
   if (atGate()) return;
   const problem = latest?.form?.problem && /** @type {HTMLElement | null} */ (flow.querySelector("input, #problem"));
   if (problem) problem.focus();
-  else if (!openSheet()) faceHeading(home);
+  else faceHeading(inSight());
+}
+
+/** The part of the page that is on show. */
+function inSight() {
+  return openSheet() ?? (atGate() ? gate : flow);
 }
 
 function atGate() {
-  return !passed || stoppedBy(held) !== "" || !held.answers.some(({ question }) => question === "gate") || latest?.form?.question === "gate";
+  return (
+    !passed || stoppedBy(held) !== "" || !held.answers.some(({ question }) => question === "gate") || latest?.form?.question === "gate"
+  );
 }
 
 function draw() {
@@ -160,7 +186,8 @@ function draw() {
   flow.hidden = atGate();
   trouble.hidden = true;
   flow.removeAttribute("aria-busy");
-  flow.replaceChildren(latest ? drawScreen(shown(latest), about(), changeable(latest)) : drawWaiting());
+  const screen = shown();
+  flow.replaceChildren(screen ? drawScreen(screen, about(), changeable(screen)) : drawWaiting());
   settle();
   mark();
 }
@@ -169,19 +196,18 @@ function draw() {
 function mark() {
   const sheet = openSheet();
   const sign = stoppedBy(held);
-  main.dataset.screen = sheet?.classList.contains("stop") ? "stop" : ((!atGate() && latest?.kind) || "start");
+  main.dataset.screen = sheet?.classList.contains("stop") ? "stop" : (!atGate() && latest?.kind) || "start";
   returnTo(sign ? `#${stopSheet(sign)}` : "#home");
-  const heading = (sheet ?? (atGate() ? gate : flow)).querySelector("h2")?.textContent;
+  const heading = inSight().querySelector("h2")?.textContent;
   document.title = heading ? `${heading} – Strayline` : "Strayline";
 }
 
-/** The screen as the engine gave it, or an old question again in the words it was asked in. @param {Screen} screen @returns {Screen} */
-function shown(screen) {
+/** The screen as the engine gave it, or an old question again in the words it was asked in. */
+function shown() {
   const old = held.answers[changing];
-  if (!old?.asked) return screen;
-  const { title, form } = old.asked;
-  const nothing = { lead: [], cautions: [], steps: [], facts: [], why: "", verdict: null, tonight: [], progress: "" };
-  return { ...screen, ...nothing, kind: "question", title, form: { ...form, value: old.value } };
+  if (!old?.asked) return latest;
+  const beside = { ranking: latest?.ranking ?? [], answered: latest?.answered ?? [] };
+  return { ...ASKED_AGAIN, ...beside, title: old.asked.title, form: { ...old.asked.form, value: old.value } };
 }
 
 function about() {
@@ -210,7 +236,13 @@ function hearEngine({ state, code, key }) {
 
 /** Something is wrong on our side: the gate and the sheets stay as they are, the questions make room. @param {string} message @param {string} code */
 function fail(message, code) {
+  latest = null;
   trouble.replaceChildren(drawFailure(message, code, before(held, held.answers.length) >= 0));
   trouble.hidden = false;
   flow.hidden = true;
+}
+
+/** A part of the page that index.html always has. @param {string} id @returns {HTMLElement} */
+function part(id) {
+  return /** @type {HTMLElement} */ (document.getElementById(id));
 }

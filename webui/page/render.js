@@ -24,7 +24,7 @@ const LIKELY = 4;
  */
 export function drawScreen(screen, about, changeable) {
   const part = copy("screen");
-  first(part, "article").dataset.kind = screen.kind;
+  Object.assign(first(part, "article").dataset, { kind: screen.kind, stop: screen.verdict?.stop ?? "" });
   say(part, "progress", screen.progress);
   say(part, "title", screen.title);
   say(part, "why", screen.why);
@@ -33,10 +33,14 @@ export function drawScreen(screen, about, changeable) {
   for (const name of /** @type {const} */ (["lead", "cautions", "steps", "tonight", "assumed"])) list(part, name, screen[name]);
   fill(part, "facts", screen.facts.map(drawFact));
   fill(part, "form", screen.form ? [drawForm(screen.form, screen.title)] : []);
-  fill(part, "verdict", screen.verdict ? [drawVerdict(screen.verdict)] : []);
+  fill(part, "verdict", screen.verdict ? [drawVerdict(screen.verdict, screen.title)] : []);
   fill(part, "unlikely", screen.ranking.slice(LIKELY).map(drawCause));
   fill(part, "ranking", screen.ranking.slice(0, LIKELY).map(drawCause));
-  fill(part, "answered", screen.answered.map((line, at) => drawAnswer(line, at, changeable[at] ?? false)));
+  fill(
+    part,
+    "answered",
+    screen.answered.map((line, at) => drawAnswer(line, at, changeable[at] ?? false)),
+  );
   if (!about.undo) first(part, "[data-act=undo]").remove();
   if (!about.changing) first(part, "[data-act=keep]").remove();
   return part;
@@ -111,10 +115,11 @@ function drawCause(cause) {
   return part;
 }
 
-/** @param {Verdict} verdict @returns {DocumentFragment} */
-function drawVerdict(verdict) {
+/** @param {Verdict} verdict @param {string} title of the screen; not said twice @returns {DocumentFragment} */
+function drawVerdict(verdict, title) {
   const part = copy("verdict");
-  for (const name of /** @type {const} */ (["title", "repair", "marina"])) say(part, name, verdict[name]);
+  say(part, "title", verdict.title === title ? "" : verdict.title);
+  for (const name of /** @type {const} */ (["repair", "marina"])) say(part, name, verdict[name]);
   for (const name of /** @type {const} */ (["lead", "remedy"])) list(part, name, verdict[name]);
   return part;
 }
