@@ -34,7 +34,7 @@ SPELLINGS = {
     "%": ("%",),
 }
 
-_TYPED = re.compile(r"([+-]?)(\d*)(?:([.,])(\d*))?\s*(\D*)")
+_TYPED = re.compile(r"([+-]?)(\d*)(?:([.,])(\d*))?\s*(mm2|\D*)")
 
 
 class QuantityError(StraylineError):
