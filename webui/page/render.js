@@ -41,6 +41,8 @@ export function drawScreen(screen, about, changeable) {
     "answered",
     screen.answered.map((line, at) => drawAnswer(line, at, changeable[at] ?? false)),
   );
+  // At the end what to do tonight comes before all else that is beside.
+  if (screen.verdict && screen.tonight.length) first(part, ".verdict").after(first(part, ".advice"));
   if (!about.undo) first(part, "[data-act=undo]").remove();
   if (!about.changing) first(part, "[data-act=keep]").remove();
   return part;
