@@ -15,7 +15,8 @@ from dataclasses import dataclass
 from strayline.catalogue.causes import CAUSE
 from strayline.components import CONNECTORS
 from strayline.errors import CaseError
-from strayline.installation import ELEMENT_TAPS, Installation, Part, base, tap_node, zone_parts
+from strayline.installation import ELEMENT_TAPS, tap_node, zone_parts
+from strayline.parts import Installation, Part, base
 from strayline.network import Branch, Network, with_branches, without_branches
 
 

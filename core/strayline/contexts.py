@@ -9,8 +9,9 @@ from __future__ import annotations
 
 from strayline.causes import own_parts
 from strayline.components import SYSTEMS
-from strayline.installation import Installation, Part, base, build, opened_by_breaker, opened_by_main, read
+from strayline.installation import build, opened_by_breaker, opened_by_main
 from strayline.network import Branch, Network, with_branches, without_branches
+from strayline.parts import Installation, Part, base, read
 
 AS_FOUND = "as_found"
 DEAD = ("cord_out", "cord_joined", "cord_in_hand")  # nothing is energised: a meter brings the only source

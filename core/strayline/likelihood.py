@@ -28,6 +28,9 @@ CLAMP_OFFSET_A = 0.0008  # clamp meters: 5 % and 0.8 mA
 MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1
 LOOP_MATTERS_S = 1e-3  # a loop of more than 1000 ohm trips no grounded-neutral detector
 
+# What a person answers when a latent has this value, where it is not the value itself: a boat next door may be quiet.
+LOOKS_LIKE = {"running": {"yes": 1.0}, "quiet": {"yes": 0.4, "no": 0.6}}
+
 # Bin edges of number tests, in the unit of the test; the first and last bins are open.
 EDGES: dict[str, tuple[float, ...]] = {
     "mA": (0.5, 2.0, 6.0, 15.0, 30.0, 100.0, 1000.0),
@@ -323,7 +326,8 @@ def _question_outcomes(found: Evidence, name: str) -> dict[str, tuple[float, ...
     if all(value is None for value in rows):
         return None
     choices = QUESTION[name].choices
-    return _reported({choice: [float(value == choice) if value else 1 / len(choices) for value in rows] for choice in choices}, WRONG_FACT)
+    seen = {value: LOOKS_LIKE.get(value, {value: 1.0}) for value in rows if value}
+    return _reported({choice: [seen[value].get(choice, 0.0) if value else 1 / len(choices) for value in rows] for choice in choices}, WRONG_FACT)
 
 
 def _opened(found: Evidence) -> dict[str, tuple[float, ...]] | None:

@@ -13,8 +13,9 @@ from strayline import contexts, solve
 from strayline.catalogue.causes import CAUSE, CAUSES
 from strayline.causes import Effect, Fault, Shunt, effect, own_parts, severities
 from strayline.components import CONNECTORS, SYSTEMS
-from strayline.installation import EARTH, Installation, Part, base, build
+from strayline.installation import EARTH, build
 from strayline.network import Network, nodes
+from strayline.parts import Installation, Part, base
 
 ROLES = ("feeder", "pedestal", "aboard")
 INFINITE_OHMS = 1e12

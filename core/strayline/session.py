@@ -18,11 +18,12 @@ from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
 from strayline.catalogue.tests import ROLES, TEST, TESTS, TOOLS, Test
 from strayline.causes import Shunt
-from strayline.errors import RequestError
-from strayline.installation import EARTH, Installation, read
+from strayline.errors import CaseError, RequestError
+from strayline.installation import EARTH
 from strayline.likelihood import LIMITS, Evidence
 from strayline.next_test import NAMED, Candidate, choose, leading_group, stop, verification
-from strayline.posterior import cause_marginal, hypotheses_of, misfit, posterior
+from strayline.parts import Installation, read
+from strayline.posterior import Hypotheses, cause_marginal, misfit, posterior
 from strayline.predict import Latent, predictions
 from strayline.units import QuantityError, parse_quantity
 
@@ -56,6 +57,10 @@ class Problem:
     answer: Answer
     key: str
     fields: dict[str, str]
+
+    def error(self) -> CaseError:
+        """The same as a file's error."""
+        return CaseError(f"answers.{self.answer.question}", self.fields.get("sentence") or "no such answer", self.answer.value)
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,7 +97,7 @@ class Session:
     marginal: Mapping[str, float] | None = None
     misfits: tuple[int, ...] = ()
     tests_done: int = 0
-    refused: tuple[str, ...] = ()
+    allowed: tuple[str, ...] = ()
 
 
 def replay(answers: Sequence[Answer], installation: object = None) -> Session:
@@ -168,6 +173,21 @@ def _epoch(ordered: Sequence[Answer]) -> tuple[int, tuple[str, ...]]:
     return (fixes[-1].seq if fixes else -1), tuple(answer.subject or "" for answer in fixes)
 
 
+def choices_of(question: str, facts: Mapping[str, str]) -> tuple[str, ...]:
+    """The choices of a question that exist with the stated facts: on 230 V there are no Y adapters of the two-line kind."""
+    choices = QUESTION[question].choices
+    if question == "plug" and facts.get("supply") == "single_230":
+        return tuple(choice for choice in choices if choice in arrangements.TWO_WIRE_PLUGS)
+    return choices
+
+
+def hypotheses_now(session: Session) -> Hypotheses:
+    """The hypotheses of a session with the prior its answers left (fixed causes, home-made wiring)."""
+    assert session.evidence is not None
+    known = session.evidence.hypotheses
+    return dataclasses.replace(known, prior=session.prior)
+
+
 # --- inference -----------------------------------------------------------------------------------------------------
 
 
@@ -191,7 +211,7 @@ def latents(installation: Installation) -> list[list[Latent]]:
     next_door = Shunt("next_door", "panel9.L1", "stove9.in", 0.002 + 0j, "line", "stove9")
     return [
         [Latent("afloat", "afloat", 0.93, (water,)), Latent("afloat", "ashore", 0.07)],
-        [Latent("neighbour", "yes", 0.5, (next_door,)), Latent("neighbour", "no", 0.5)],
+        [Latent("neighbour", "running", 0.35, (next_door,)), Latent("neighbour", "quiet", 0.65)],
         inverter_latents(),
     ]
 
@@ -221,7 +241,7 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     setup = tuple(sorted((name, value) for name, value in facts.items() if name not in ("role", "tools")))
     evidence = _evidence(setup, "" if installation is None else json.dumps(installation, sort_keys=True))
     prior = _prior(evidence, facts, fixed)
-    hypotheses = hypotheses_of([evidence.hypotheses.causes[cause] for cause in evidence.hypotheses.cause_of], prior)
+    hypotheses = dataclasses.replace(evidence.hypotheses, prior=prior)
     observations = tuple(found for answer in ordered if (found := _observation(evidence, answer, epoch)))
     weights = posterior(hypotheses, [observation.likelihood for observation in observations])
     marginal = cause_marginal(hypotheses, weights)
@@ -234,7 +254,7 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     physical = sum(answer.question in TEST and answer.value not in (UNKNOWN, CANNOT) for answer in ordered if answer.seq > epoch)
     session = Session(
         ordered, facts, evidence=evidence, weights=weights, prior=prior, observations=observations, marginal=marginal, misfits=misfits,
-        tests_done=physical, refused=tuple(test.id for test in TESTS if test.id not in done and test not in tests),
+        tests_done=physical, allowed=tuple(test.id for test in tests),
     )  # fmt: skip
     if _dangerous(evidence, weights):
         return _with(session, verdict="danger")

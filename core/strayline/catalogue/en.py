@@ -239,6 +239,9 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "question.clear.why": "Things change at a dock. We ask each time before power goes back on.",
     "question.clear.clear": "Yes, all of it",
     "question.clear.not_clear": "No, or not all of it",
+    "question.fixed.text": "Was it put right, or taken out of use?",
+    "question.fixed.why": "Then we look again, in case there was a second cause.",
+    "question.fixed.done": "Yes. Look for a second cause",
     "question.role.text": "Who is doing the tests?",
     "question.role.why": "You only get tests that you may do. Owning a meter does not change that.",
     "question.role.user": "Owner, captain or crew",
@@ -630,6 +633,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "A technician reads ohms between the two neutrals, both cords out and sources locked out: under about 1 ohm confirms it."
     ),
     # --- tests ---
+    "test.ask": "What did you see?",
     "test.cannot": "I can't do this one",
     "test.look_over.title": "Look at plug, cord, inlet and adapter",
     "test.look_over.steps": (
