@@ -166,6 +166,7 @@ class _Prepared:
         for reading, probe in self._readings(installation, network, present):
             self.names.append(reading)
             self.probes.append(probe)
+        self.sweep = solve.Sweep(self.factors, self.probes, [watch.id for watch in watched])
         self.continuity = _continuity(installation, self.factors, self.nodes) if context == "cord_in_hand" else {}
         self.seen: dict[tuple[Shunt, ...], Outlook] = {}
 
@@ -192,10 +193,10 @@ class _Prepared:
         return self.seen[here]
 
     def _outlook(self, shunts: list[solve.Shunt]) -> Outlook:
-        values = solve.sweep(self.factors, self.probes, shunts)
+        values, loops = self.sweep.at(shunts)
         count = len(self.watched)
         residual = tuple(abs(value) for value in values[:count])
-        loop = tuple(abs(solve.window_admittance(self.factors, watch.id, shunts)) for watch in self.watched)
+        loop = tuple(abs(value) for value in loops)
         line, place = [], count
         for lines in self.lines:
             line.append(max((abs(value) for value in values[place : place + len(lines)]), default=0.0))

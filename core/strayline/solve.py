@@ -165,20 +165,9 @@ class Factors:
             self._joined[key] = Factors(with_branches(self.network, *extra))
         return self._joined[key]
 
-    def drawn(self, shunts: Sequence[Shunt], open_values: Iterable[complex]) -> list[complex]:
-        """Currents q through the shunts, from a to b, when their open ports hold these values: (R + Z) q = open values."""
-        if len(shunts) == 1:
-            ((a, b, ohms),) = shunts
-            total = ohms + self.port(a, b).impedance
-            if total == 0:
-                raise _cancelled(shunts)
-            return [value / total for value in open_values]
-        ports = [self.between(a, b) for a, b, _ in shunts]
-        matrix = [
-            [self.transfer(port, a, b) + (ohms if row == column else 0) for column, port in enumerate(ports)]
-            for row, (a, b, ohms) in enumerate(shunts)
-        ]
-        return _gauss(matrix, list(open_values), shunts)
+    def mutual(self, one: tuple[str, str], other: tuple[str, str]) -> complex:
+        """Volts that appear at port `one` for each ampere put into a of port `other` and taken out at its b, in ohms."""
+        return self.transfer(self.between(*other), *one)
 
 
 def _cancelled(shunts: Sequence[Shunt]) -> NetworkError:
@@ -187,24 +176,34 @@ def _cancelled(shunts: Sequence[Shunt]) -> NetworkError:
     return NetworkError(f"{where}: {rule}", name=where, rule=rule, value=None)
 
 
-def _gauss(matrix: list[list[complex]], right: list[complex], shunts: Sequence[Shunt]) -> list[complex]:
-    """Solve the few equations between shunts by elimination with row exchanges."""
+def _gauss(matrix: list[list[complex]], columns: list[list[complex]], shunts: Sequence[Shunt]) -> list[list[complex]]:
+    """Solve the few equations between shunts, for every right-hand column, by elimination with row exchanges."""
     size = len(matrix)
     for step in range(size):
         best = max(range(step, size), key=lambda row: abs(matrix[row][step]))
-        if matrix[best][step] == 0:
+        pivot = matrix[best][step]
+        if pivot == 0:
             raise _cancelled(shunts)
-        matrix[step], matrix[best] = matrix[best], matrix[step]
-        right[step], right[best] = right[best], right[step]
+        if best != step:
+            matrix[step], matrix[best] = matrix[best], matrix[step]
+            for column in columns:
+                column[step], column[best] = column[best], column[step]
+        top = matrix[step]
         for row in range(step + 1, size):
-            share = matrix[row][step] / matrix[step][step]
-            right[row] -= share * right[step]
-            for column in range(step, size):
-                matrix[row][column] -= share * matrix[step][column]
-    for row in reversed(range(size)):
-        known = sum((matrix[row][column] * right[column] for column in range(row + 1, size)), 0j)
-        right[row] = (right[row] - known) / matrix[row][row]
-    return right
+            below = matrix[row]
+            share = below[step] / pivot
+            if share:
+                for place in range(step, size):
+                    below[place] -= share * top[place]
+                for column in columns:
+                    column[row] -= share * column[step]
+    for column in columns:
+        for row in reversed(range(size)):
+            value = column[row]
+            for place in range(row + 1, size):
+                value -= matrix[row][place] * column[place]
+            column[row] = value / matrix[row][row]
+    return columns
 
 
 def factor(network: Network) -> Factors:
@@ -236,21 +235,81 @@ def probe_voltage(factors: Factors, a: str, b: str) -> Probe:
     return factors.between(a, b)
 
 
-def sweep(factors: Factors, probes: Sequence[Probe], shunts: Sequence[Shunt]) -> list[complex]:
-    """Values of all probes after connecting each shunt's ohms from its node a to its node b.
+class Sweep:
+    """Many sets of shunts on one factored network: transfers and port impedances are kept, so a set costs a few multiplications.
 
-    NaN for a voltage between islands. Relative error about 1e-12. No new factors, unless a shunt joins two islands.
+    `probes` are read, and the loop through the window of each of `sensors`.
     """
-    joined = factors.joined(shunts)
-    if joined is not None:
-        return [joined.value(probe) for probe in probes]
-    if not shunts:
-        return [factors.value(probe) for probe in probes]
-    currents = factors.drawn(shunts, [factors.port(a, b).open_voltage for a, b, _ in shunts])
-    return [
-        factors.value(probe) - sum(factors.transfer(probe, a, b) * q for (a, b, _), q in zip(shunts, currents, strict=True))
-        for probe in probes
-    ]
+
+    __slots__ = ("_alone", "_base", "_factors", "_mutual", "_ports", "_windows", "probes", "sensors")
+
+    def __init__(self, factors: Factors, probes: Sequence[Probe], sensors: Sequence[str] = ()) -> None:
+        self._factors = factors
+        self.probes = tuple(probes)
+        self.sensors = tuple(sensors)
+        self._base = [factors.value(probe) for probe in self.probes]
+        self._alone = [factors.window_admittance(sensor) for sensor in self.sensors]
+        self._windows = [_window(factors.network, sensor) for sensor in self.sensors]
+        self._ports: dict[tuple[str, str], tuple[complex, list[complex], list[complex]]] = {}
+        self._mutual: dict[tuple[str, str, str, str], complex] = {}
+
+    def _port(self, a: str, b: str) -> tuple[complex, list[complex], list[complex]]:
+        """Open voltage of a port, its transfers to the probes and to the windows."""
+        found = self._ports.get((a, b))
+        if found is None:
+            transfer = self._factors.transfer
+            probes = [transfer(probe, a, b) for probe in self.probes]
+            found = self._ports[a, b] = self._factors.port(a, b).open_voltage, probes, [transfer(window, a, b) for window in self._windows]
+        return found
+
+    def _between(self, one: tuple[str, str], other: tuple[str, str]) -> complex:
+        """Volts at `one` for an ampere drawn at `other`: the mutual impedance of two ports."""
+        key = (*one, *other)
+        found = self._mutual.get(key)
+        if found is None:
+            found = self._mutual[key] = self._factors.mutual(one, other)
+        return found
+
+    def at(self, shunts: Sequence[Shunt]) -> tuple[list[complex], list[complex]]:
+        """Probes, and window admittances in siemens, after connecting each shunt's ohms from its node a to its node b.
+
+        Large-change sensitivity (Sherman-Morrison-Woodbury): q = V / (R + Z) amperes through the shunts, and each reading falls by
+        transfer times q. NaN for a voltage between islands. Relative error about 1e-12. No new factors, unless a shunt joins two islands.
+        """
+        if not shunts:
+            return list(self._base), list(self._alone)
+        joined = self._factors.joined(shunts)
+        if joined is not None:
+            return [joined.value(probe) for probe in self.probes], [joined.window_admittance(sensor) for sensor in self.sensors]
+        ends = [(a, b) for a, b, _ in shunts]
+        ports = [self._port(a, b) for a, b in ends]
+        if len(shunts) == 1:
+            total = shunts[0][2] + self._between(ends[0], ends[0])
+            if total == 0:
+                raise _cancelled(shunts)
+            volts, transfers, windows = ports[0]
+            drawn = volts / total
+            return (
+                [value - transfer * drawn for value, transfer in zip(self._base, transfers, strict=True)],
+                [alone + window * window / total for alone, window in zip(self._alone, windows, strict=True)],
+            )
+        matrix = [[self._between(one, other) for other in ends] for one in ends]
+        for place, (_, _, ohms) in enumerate(shunts):
+            matrix[place][place] += ohms
+        columns = [[port[0] for port in ports], *([port[2][place] for port in ports] for place in range(len(self.sensors)))]
+        drawn_by, *loops = _gauss(matrix, columns, shunts)
+        values = list(self._base)
+        for (_, transfers, _), current in zip(ports, drawn_by, strict=True):
+            values = [value - transfer * current for value, transfer in zip(values, transfers, strict=True)]
+        return values, [
+            alone + sum(port[2][place] * current for port, current in zip(ports, loop, strict=True))
+            for place, (alone, loop) in enumerate(zip(self._alone, loops, strict=True))
+        ]
+
+
+def sweep(factors: Factors, probes: Sequence[Probe], shunts: Sequence[Shunt]) -> list[complex]:
+    """Values of all probes after connecting each shunt's ohms from its node a to its node b, as `Sweep.at`."""
+    return Sweep(factors, probes).at(shunts)[0]
 
 
 def window_admittance(factors: Factors, sensor_id: str, shunts: Sequence[Shunt] = ()) -> complex:
@@ -258,15 +317,7 @@ def window_admittance(factors: Factors, sensor_id: str, shunts: Sequence[Shunt] 
 
     It is the residual for one volt in series with every enclosed conductor, counted from supply to load, and all sources dead.
     """
-    joined = factors.joined(shunts)
-    if joined is not None:
-        return joined.window_admittance(sensor_id)
-    alone = factors.window_admittance(sensor_id)
-    if not shunts:
-        return alone
-    probe = probe_residual(factors, sensor_id)
-    transfers = [factors.transfer(probe, a, b) for a, b, _ in shunts]
-    return alone + sum(one * two for one, two in zip(transfers, factors.drawn(shunts, transfers), strict=True))
+    return Sweep(factors, (), (sensor_id,)).at(shunts)[1][0]
 
 
 def crossings(network: Network, solution: Solution, sensor_id: str) -> list[tuple[Branch, complex]]:
