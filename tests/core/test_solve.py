@@ -155,7 +155,7 @@ def test_reciprocity(network: Network, data: st.DataObject) -> None:
         )
 
     there, back = driven(one, two), driven(two, one)
-    assert abs(there - back) <= 1e-9 * max(abs(there), abs(back), 1e-6)
+    assert abs(there - back) <= 1e-9 * max(abs(there), abs(back), 1e-3)
 
 
 @quick
