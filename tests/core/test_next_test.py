@@ -166,6 +166,7 @@ def test_verification_looks_where_the_leader_differs_most() -> None:
     assert verification(hypotheses, hypotheses.prior, [among_rivals, against_leader], "load") == "among_rivals"
     assert verification(hypotheses, hypotheses.prior, [], "bond") is None
     assert verification(hypotheses, [1, 0, 0], [against_leader], "bond") is None
+    assert verification(hypotheses, [0, 0.5, 0.5], [against_leader], "bond") is None
 
 
 @given(cases(), st.integers(0, 9), st.integers(0, 9))
@@ -188,6 +189,7 @@ BLIND = binary("blind", 1, [0.9, 0.9])
         (0.95, [SHARP], 2, 0, "named"),
         (0.95, [BLIND], 0, 0, "named"),
         (0.95, [], 1, 1, "named"),
+        (0.90, [SHARP], 2, 0, "named"),
         (0.89, [SHARP], 9, 0, None),
         (0.95, [SHARP], 1, 1, None),
         (0.95, [SHARP], 2, 1, "named"),

@@ -90,8 +90,9 @@ def test_a_thousand_reports_do_not_underflow() -> None:
 def test_a_report_no_hypothesis_allows() -> None:
     """A report impossible under every hypothesis is an error with a name, never a division by zero."""
     hypotheses = two_causes()
-    with pytest.raises(InferenceError, match="no hypothesis allows"):
+    with pytest.raises(InferenceError, match="no hypothesis allows") as caught:
         posterior(hypotheses, [[1, 0, 0], [0, 1, 1]])
+    assert caught.value.details == {"reports": 2}
     with pytest.raises(InferenceError, match="no hypothesis allows"):
         update(hypotheses.prior, [0, 0, 0])
     with pytest.raises(InferenceError, match="no hypothesis allows"):
@@ -153,13 +154,15 @@ def test_total_variation_ends() -> None:
 
 
 def test_groups_are_split_by_any_one_test() -> None:
-    """Causes alike on every test form a group; a single test that differs by more than the limit splits it."""
+    """Causes alike on every test form a group; a single test that differs by more than the limit, not just by it, splits it."""
     hypotheses = hypotheses_of(["bond", "leak", "load"], [5, 3, 2])
     alike = {"trips": [0.9, 0.9, 0.1], "holds": [0.1, 0.1, 0.9]}
     apart = {"trips": [0.9, 0.8, 0.1], "holds": [0.1, 0.2, 0.9]}
     assert groups(hypotheses, hypotheses.prior, [alike]) == [("bond", "leak"), ("load",)]
     assert groups(hypotheses, hypotheses.prior, [alike, apart]) == [("bond",), ("leak",), ("load",)]
     assert groups(hypotheses, hypotheses.prior, [alike, apart], limit=0.11) == [("bond", "leak"), ("load",)]
+    half = {"trips": [0.75, 0.25, 0.25], "holds": [0.25, 0.75, 0.75]}
+    assert groups(two_causes(), two_causes().prior, [half], limit=0.5) == [("bond", "leak")]
 
 
 def test_nothing_separates_without_tests() -> None:
@@ -214,6 +217,7 @@ def test_misfits_of_the_leader_alone() -> None:
     hypotheses = hypotheses_of(["bond", "leak"], [9, 1])
     likelihoods = [[0.9, 0.01], [0.24, 0.9], [0.26, 0.9], [0.2, 0.9], [0.1, 0.9]]
     assert misfit(hypotheses, hypotheses.prior, likelihoods, [2, 2, 2, 3, 3]) == (1, 4)
+    assert misfit(two_causes(), two_causes().prior, [[0.25, 0.9, 0.9]], [2]) == ()
 
 
 def test_misfit_takes_the_leaders_best_side() -> None:

@@ -7,7 +7,7 @@ from itertools import permutations, product
 
 import pytest
 
-from strayline.devices import DEVICES, class_a_longest_break_s, overcurrent_probability
+from strayline.devices import DEVICES, class_a_longest_break_s, inrush_probability, overcurrent_probability
 from strayline.next_test import Candidate, choose, expected_information
 from strayline.posterior import cause_marginal, hypotheses_of, posterior
 
@@ -52,6 +52,14 @@ def test_ul_489_thermal(rated_a: float, minutes: float) -> None:
     assert overcurrent_probability(rated_a, rated_a, 24 * 60) < 0.05
     assert overcurrent_probability(rated_a, 1.35 * rated_a, 60) > 0.95
     assert overcurrent_probability(rated_a, 2 * rated_a, minutes) > 0.95
+
+
+@pytest.mark.parametrize(("curve", "holds", "opens"), [("b", 3, 5), ("c", 5, 10), ("d", 10, 20)])
+def test_iec_60898_magnetic(curve: str, holds: float, opens: float) -> None:
+    """The instantaneous release of a B, C or D breaker holds at 3, 5 or 10 times its rating and opens at 5, 10 or 20 (IEC 60898-1)."""
+    assert inrush_probability(16, 16 * holds, curve) < 0.05
+    assert inrush_probability(16, 16 * opens, curve) > 0.95
+    assert 0.4 < inrush_probability(16, 16 * math.sqrt(holds * opens), curve) < 0.6
 
 
 def test_shannon_entropy() -> None:
