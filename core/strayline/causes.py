@@ -73,7 +73,10 @@ class Severity:
 def applied(installation: Installation, network: Network, faults: Iterable[Fault]) -> Network:
     """The network with every fault in it, shunts as branches: what `residuals` and `netlist` solve."""
     for number, fault in enumerate(faults):
-        made = effect(installation, network, fault)
+        try:
+            made = effect(installation, network, fault)
+        except CaseError as error:
+            raise CaseError(f"faults[{number}].{error.where}", error.rule, error.value) from None
         branches = [dataclasses.replace(shunt.branch(), id=f"fault{number}.{shunt.id}") for shunt in made.shunts]
         network = with_branches(made.network, *branches)
     return network
@@ -82,20 +85,20 @@ def applied(installation: Installation, network: Network, faults: Iterable[Fault
 def effect(installation: Installation, network: Network, fault: Fault) -> Effect:
     """What one fault does to a network. Raises CaseError when the fault names a part that cannot have it."""
     if fault.cause not in _EFFECTS:
-        raise CaseError("faults.cause", f"must be one of {', '.join(_EFFECTS)}", fault.cause)
+        raise CaseError("cause", f"must be one of {', '.join(_EFFECTS)}", fault.cause)
     return _EFFECTS[fault.cause](installation, network, fault)
 
 
 def _part(installation: Installation, part_id: str, *kinds: str) -> Part:
     part = installation.index.get(part_id)
     if part is None or part.kind not in kinds:
-        raise CaseError("faults.at", f"must be the id of a {' or '.join(kinds)}", part_id)
+        raise CaseError("at", f"must be the id of a {' or '.join(kinds)}", part_id)
     return part
 
 
 def _ohms(fault: Fault) -> float:
     if not fault.ohms > 0:
-        raise CaseError("faults.ohms", "must be above zero ohm", fault.ohms)
+        raise CaseError("ohms", "must be above zero ohm", fault.ohms)
     return fault.ohms
 
 
@@ -112,7 +115,7 @@ def _appliance_leak(installation: Installation, network: Network, fault: Fault) 
 def _leak_point(network: Network, load: Part, position: float) -> tuple[Network, str]:
     """The node `position` along a load's element, made by cutting the element there when no tap is."""
     if not 0 <= position <= 1:
-        raise CaseError("faults.position", "must be between 0 (line end) and 1", position)
+        raise CaseError("position", "must be between 0 (line end) and 1", position)
     if position == 0:
         return network, f"{load.id}.in"
     node = tap_node(load.id, position)
@@ -147,7 +150,7 @@ def _summed_filters(installation: Installation, network: Network, fault: Fault) 
     loads = [part for part in own_parts(installation, fault.at or None) if part.kind == "load"]
     farads = fault.nanofarads * 1e-9 / max(len(loads), 1)
     if not farads > 0:
-        raise CaseError("faults.nanofarads", "must be above zero nF", fault.nanofarads)
+        raise CaseError("nanofarads", "must be above zero nF", fault.nanofarads)
     ohms = -1j / (2 * math.pi * network.hertz * farads)
     return Effect(network, tuple(Shunt(f"filter.{load.id}", f"{load.id}.in", f"{load.id}.frame", ohms, "filter", load.id) for load in loads))
 
@@ -193,7 +196,7 @@ def _neutral_ahead_of_device(installation: Installation, network: Network, fault
     ahead = next((branch.from_node for branch in network.branches if branch.id == f"{device.id}.N"), None)
     returns = [branch for branch in network.branches if branch.owner == load.id and branch.kind == "load"]
     if ahead is None or load.text("across") == "L1-L2":
-        raise CaseError("faults.load", "must be a load with a neutral, behind a closed main", load.id)
+        raise CaseError("load", "must be a load with a neutral, behind a closed main", load.id)
     last = returns[-1]
     moved = dataclasses.replace(last, to_node=ahead)
     return Effect(dataclasses.replace(network, branches=tuple(moved if branch is last else branch for branch in network.branches)))

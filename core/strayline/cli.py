@@ -11,7 +11,7 @@ from typing import Any
 
 from strayline import __version__, casefile, report
 from strayline.casefile import Case
-from strayline.errors import StraylineError
+from strayline.errors import CaseError, StraylineError
 from strayline.netlist import netlist
 from strayline.protocol import PROTOCOL, handle
 from strayline.residuals import residuals, stated_network
@@ -111,6 +111,10 @@ def main(arguments: Sequence[str] | None = None) -> int:
         return 0
     try:
         chosen.run(chosen)
+    except CaseError as error:
+        file = getattr(chosen, "file", None) or chosen.answers
+        print((error if error.file else error.in_file(file)).message.replace("\n", " "), file=sys.stderr)
+        return BAD_FILE
     except StraylineError as error:
         print(error.message.replace("\n", " "), file=sys.stderr)
         return BAD_FILE

@@ -18,6 +18,7 @@ class Parameter:
 
     type    -- NUMBER (unit, low, high), CHOICE (choices), FLAG, REFERENCE (a part id, or "" for a loose plug) or REFERENCES
     default -- REQUIRED, None (may be left out and means "by the rule of its kind") or a value
+    whole   -- only whole numbers exist
     """
 
     name: str
@@ -28,6 +29,7 @@ class Parameter:
     high: float = 0.0
     choices: tuple[str, ...] = ()
     source: str = "common practice"
+    whole: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -71,7 +73,7 @@ ACROSS = ("L1-N", "L2-N", "L1-L2")
 
 _FROM = Parameter("from", REFERENCE)
 _LENGTH = Parameter("length_m", NUMBER, "m", None, 0.1, 500.0)
-_AWG = Parameter("awg", NUMBER, "AWG", None, -3.0, 20.0, source="ASTM B258")
+_AWG = Parameter("awg", NUMBER, "AWG", None, -3.0, 20.0, source="ASTM B258", whole=True)
 _AREA = Parameter("area_mm2", NUMBER, "mm2", None, 0.5, 300.0, source="IEC 60228")
 _LINE = Parameter("line_ohms", NUMBER, "ohm", None, 1e-9, 1e3)
 _NEUTRAL = Parameter("neutral_ohms", NUMBER, "ohm", None, 1e-9, 1e3)
@@ -139,12 +141,12 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         _device("elci_30"),
         _NON_OPERATING,
         _OPERATING,
-        Parameter("poles", NUMBER, "", 2, 1, 2),
+        Parameter("poles", NUMBER, "", 2, 1, 2, whole=True),
         Parameter("closed", FLAG, "", True),
         *_short(0.003),
     ),
     "panel": (Parameter("from", REFERENCES), *_short(0.001)),
-    "breaker": (_FROM, Parameter("poles", NUMBER, "", 1, 1, 2), Parameter("closed", FLAG, "", True), *_short(0.004)),
+    "breaker": (_FROM, Parameter("poles", NUMBER, "", 1, 1, 2, whole=True), Parameter("closed", FLAG, "", True), *_short(0.004)),
     "load": (
         _FROM,
         Parameter("across", CHOICE, "", "L1-N", choices=ACROSS),

@@ -34,6 +34,8 @@ def expand(context: str, installation: Installation) -> tuple[str, ...]:
 
 def setting(context: str, installation: Installation) -> Installation | None:
     """What is plugged into what in this state; None when the stated parts cannot make it."""
+    if context != AS_FOUND and not installation.of_kind("panel"):
+        return None  # a dock without a boat has no other state
     if context == "without_y":
         return _without_y(installation)
     if context == "other_pedestal":

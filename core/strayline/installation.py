@@ -250,7 +250,7 @@ def _breaker(part: Part, installation: Installation, wiring: _Wiring) -> None:
     fed = _fed(part, installation)
     for conductor in fed:
         if conductor not in source:
-            raise CaseError(part.id, f"its panel has no {conductor}", part.parents[0])
+            raise CaseError(f"{installation.paths[part.id]}.from", f"this panel has no {conductor}", part.parents[0])
     _through(part, source, wiring, _short_ohms(part), fed)
     wiring.ends[part.id]["G"] = source["G"]
     if not part.flag("closed"):
@@ -281,7 +281,7 @@ def _load(part: Part, installation: Installation, wiring: _Wiring) -> None:
     first, second = part.text("across").split("-")
     for conductor in (first, second):
         if conductor not in source:
-            raise CaseError(part.id, f"nothing brings {conductor} to it", part.text("across"))
+            raise CaseError(f"{installation.paths[part.id]}.across", f"nothing brings {conductor} to it", part.text("across"))
     system = SYSTEMS[wiring.system]
     supply = installation.of_kind("supply")[0]
     phase = supply.number("volts") or system.volts

@@ -31,7 +31,8 @@ def netlist(network: Network, title: str) -> str:
     numbers = {name: place for place, name in enumerate(names)}
     enclosed = {branch_id for sensor in network.sensors for branch_id in sensor.branches}
     places = {branch.id: place for place, branch in enumerate(network.branches, 1)}
-    lines = [f"* {' '.join(title.split())}", "*", "* node table"]
+    # Plain ASCII: SPICE knows no encodings, and a title from a JSON file may hold half a character.
+    lines = [f"* {' '.join(title.split()).encode('ascii', 'replace').decode()}", "*", "* node table"]
     lines += [f"* {number} = {name}" for name, number in numbers.items()]
     inner = len(names)
     for branch in network.branches:

@@ -24,6 +24,7 @@ from strayline.components import (
     SYSTEMS,
     Parameter,
 )
+from strayline.devices import DEVICES, operating_band_ma
 from strayline.errors import CaseError
 
 _ID = re.compile(r"[a-z][a-z0-9_]{0,31}")
@@ -57,6 +58,7 @@ class Installation:
     parts: tuple[Part, ...]
     assumed: tuple[tuple[str, object, str], ...] = ()
     index: Mapping[str, Part] = field(default_factory=dict, compare=False)
+    paths: Mapping[str, str] = field(default_factory=dict, compare=False)  # part id -> its key path in the case
     zones: dict[str, frozenset[str]] = field(default_factory=dict, compare=False)  # filled by `zone_parts`
 
     def part(self, part_id: str) -> Part:
@@ -113,11 +115,12 @@ def read(raw: object, where: str = "installation") -> Installation:
         assumed += left_out
     for part in parts.values():
         _check_parents(part, parts, paths[part.id])
+        _check_band(part, paths[part.id])
     ordered = _in_order(parts, paths)
     _check_mated_once(ordered, paths)
     _check_supply(ordered, where)
     _check_systems(ordered, paths)
-    return Installation(ordered, tuple(assumed), {part.id: part for part in ordered})
+    return Installation(ordered, tuple(assumed), {part.id: part for part in ordered}, paths)
 
 
 def _read_part(row: object, path: str) -> tuple[Part, list[tuple[str, object, str]]]:
@@ -191,12 +194,14 @@ def _read_quantity(raw: object, parameter: Parameter, path: str) -> float | None
 
 
 def _read_number(raw: object, parameter: Parameter, path: str) -> float:
-    if isinstance(raw, bool) or not isinstance(raw, (int, float)) or not math.isfinite(raw):
+    if isinstance(raw, bool) or not isinstance(raw, (int, float)):
         raise CaseError(path, f"must be a number in {parameter.unit}" if parameter.unit else "must be a number", raw)
     if raw == 0 and parameter.unit == "ohm":
         raise CaseError(path, "zero ohms in a conductor; give its real resistance", raw)
-    if not parameter.low <= raw <= parameter.high:
+    if not parameter.low <= raw <= parameter.high:  # refuses not-a-number too
         raise CaseError(path, f"must be between {parameter.low:g} and {parameter.high:g} {parameter.unit}".rstrip(), raw)
+    if parameter.whole and raw != int(raw):
+        raise CaseError(path, "must be a whole number", raw)
     return float(raw)
 
 
@@ -228,6 +233,15 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
             raise CaseError(path, "a load needs exactly one of ohms, watts and amperes", ", ".join(given) or "none")
     if part.kind in ("panel", "hull") and len(part.parents) > 2:
         raise CaseError(f"{path}.from", "at most two", len(part.parents))
+
+
+def _check_band(part: Part, path: str) -> None:
+    """A stated operating band is one: its non-operating value does not exceed its operating value."""
+    if "device" in part.values and part.values["device"] != "none":
+        try:
+            operating_band_ma(DEVICES[part.text("device")], part.number("non_operating_ma"), part.number("operating_ma"))
+        except CaseError as error:
+            raise CaseError(f"{path}.non_operating_ma", error.rule, error.value) from None
 
 
 def _in_order(parts: Mapping[str, Part], paths: Mapping[str, str]) -> tuple[Part, ...]:
