@@ -5,6 +5,7 @@ from __future__ import annotations
 import contextlib
 import http.server
 import os
+import sys
 from functools import partial
 from typing import TYPE_CHECKING
 
@@ -31,7 +32,7 @@ _TYPES = {
 }
 
 
-class _Handler(http.server.SimpleHTTPRequestHandler):
+class Handler(http.server.SimpleHTTPRequestHandler):
     """Files of one folder, no listings, our headers on each."""
 
     protocol_version = "HTTP/1.1"
@@ -55,16 +56,21 @@ class _Server(http.server.ThreadingHTTPServer):
     # On Windows "reuse" would let two servers share one port, each getting some of the requests.
     allow_reuse_address = os.name != "nt"
 
+    def handle_error(self, request: object, client_address: object) -> None:
+        """A browser that closes a connection in the middle is no error of ours; the rest is printed as ever."""
+        if not isinstance(sys.exception(), ConnectionError):
+            super().handle_error(request, client_address)
 
-def server(site: Path, port: int | None = None) -> http.server.HTTPServer:
+
+def server(site: Path, port: int | None = None, handler: type[Handler] = Handler) -> http.server.HTTPServer:
     """A server for folder `site`, bound and ready for `serve_forever`.
 
     port -- 0 for any free one, None for 8017 or the next free one after it. Raises OSError when the named port is taken.
     """
-    handler = partial(_Handler, directory=str(site))
+    for_site = partial(handler, directory=str(site))
     if port is not None:
-        return _Server((HOST, port), handler)
+        return _Server((HOST, port), for_site)
     for candidate in range(PORT, PORT + 100):
         with contextlib.suppress(OSError):
-            return _Server((HOST, candidate), handler)
-    return _Server((HOST, 0), handler)
+            return _Server((HOST, candidate), for_site)
+    return _Server((HOST, 0), for_site)
