@@ -13,7 +13,7 @@ import { addToSheet, faceHeading, onGate, openSheet, returnTo, stopSheet, word }
 import { Store } from "./storage.js";
 
 const WAIT_SHOWN_MS = 250; // an answer sooner than this needs no waiting screen
-const SETTLE_MS = 300; // a second tap meant for the screen before must not answer this one
+const SETTLE_MS = 300; // within a double tap
 
 /** @type {Omit<Screen, "title" | "form">} the rest of a screen that only asks an old question again */
 const ASKED_AGAIN = {
@@ -143,7 +143,7 @@ async function show() {
   asked += 1;
   const turn = asked;
   flow.setAttribute("aria-busy", "true");
-  for (const fieldset of flow.querySelectorAll("fieldset")) fieldset.disabled = true;
+  holdAnswers();
   const slow = setTimeout(() => !latest && draw(), WAIT_SHOWN_MS);
   try {
     const reply = await engine.ask(request(held, language));
@@ -165,8 +165,9 @@ function receive(screen) {
   if (sign && screen) return addToSheet(stopSheet(sign), [...screen.lead, ...screen.cautions, ...screen.steps]);
   draw();
   if (atGate()) return;
-  const problem = latest?.form?.problem && /** @type {HTMLElement | null} */ (flow.querySelector("input, #problem"));
-  if (problem) problem.focus();
+  /** @type {HTMLElement | null} */
+  const refused = flow.querySelector("input[aria-invalid]") ?? flow.querySelector(".problem");
+  if (refused) refused.focus();
   else faceHeading(inSight());
 }
 
@@ -220,12 +221,20 @@ function changeable(screen) {
   return placesOf(held, screen.answered).map((place) => held.answers[place]?.asked !== undefined);
 }
 
+/** Answers wait for a blink, so that a second tap meant for the screen before does not land on this one. */
 function settle() {
-  const fieldsets = [...flow.querySelectorAll("fieldset")];
-  for (const fieldset of fieldsets) fieldset.disabled = true;
+  const buttons = holdAnswers();
   setTimeout(() => {
-    for (const fieldset of fieldsets) fieldset.disabled = false;
+    for (const button of buttons) button.disabled = false;
   }, SETTLE_MS);
+}
+
+/** Makes the answers deaf; a field stays open, for it may have the focus. */
+function holdAnswers() {
+  /** @type {NodeListOf<HTMLButtonElement>} */
+  const buttons = flow.querySelectorAll("form button");
+  for (const button of buttons) button.disabled = true;
+  return buttons;
 }
 
 /** @param {import("../boot.js").EngineState} engineState */
