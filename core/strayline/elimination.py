@@ -26,7 +26,7 @@ if TYPE_CHECKING:
 Row = dict[int, complex]
 
 ROOM_FOR_SINGLE = 0.1  # a single pivot may be this fraction of the largest entry beside it: multipliers stay below ten
-LOST = 1e-14  # a pivot this small against the row it came from is what rounding left of a cancellation, not a number
+LOST = 1e-13  # an entry this small against the row it came from is what rounding left of a cancellation, not a number
 PARLETT = 0.6403882032022076  # (1 + sqrt 17) / 8, Bunch and Parlett's bound between single and 2 × 2 pivots
 
 
@@ -133,8 +133,7 @@ def _choose(rows: list[Row], unknown: int, potentials: int, scale: list[float]) 
     if unknown < potentials:
         flow, least = -1, 0.0
         for other, entry in row.items():
-            if other >= potentials:
-                coupling = abs(entry)
+            if other >= potentials and (coupling := abs(entry)) > LOST * scale[unknown]:
                 ratio = abs(rows[other][other]) / coupling / coupling
                 if flow < 0 or ratio < least:
                     flow, least = other, ratio

@@ -16,6 +16,7 @@ from strayline.errors import NetworkError
 from strayline.network import Branch, Network, Sensor, checked, nodes, replaced, with_branches, without_branches
 from strayline.solve import (
     Probe,
+    Sweep,
     crossings,
     factor,
     probe_current,
@@ -430,6 +431,24 @@ def test_shunts_equal_branches(network: Network, data: st.DataObject) -> None:
     scale = max(1.0, *(abs(fresh.current(branch.id)) for branch in added.branches), *(abs(factors.value(probe)) for probe in probes))
     assert sweep(factors, probes, shunts) == pytest.approx([fresh.at(probe) for probe in probes], rel=1e-8, abs=1e-8 * scale)
     assert window_admittance(factors, "watch", shunts) == pytest.approx(driven_through(added), rel=1e-7, abs=1e-9)
+
+
+def test_a_sweep_remembers_nothing_but_the_network() -> None:
+    """Sets of shunts asked of one Sweep, in any order and again, read what each reads alone, joined islands too."""
+    factors = factor(generator())
+    probes = (probe_residual(factors, "pedestal"), probe_voltage(factors, "g.1", "earth"))
+    sets = [
+        [],
+        [("b.N", "b.G", 0.01)],
+        [("b.G", "b.N", 0.01), ("b.L", "b.G", 700 - 200j)],
+        [("g.1", "earth", 50), ("g.2", "b.G", 9)],
+        [("b.L", "b.G", 80)],
+    ]
+    kept = Sweep(factors, probes, ("pedestal",))
+    for shunts in (*sets, *reversed(sets)):
+        values, (loop,) = kept.at(shunts)
+        assert values == pytest.approx(sweep(factor(generator()), probes, shunts), rel=1e-12, nan_ok=True)
+        assert loop == pytest.approx(window_admittance(factor(generator()), "pedestal", shunts), rel=1e-12, abs=1e-15)
 
 
 def driven_through(network: Network) -> complex:
