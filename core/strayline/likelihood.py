@@ -84,6 +84,9 @@ class Evidence:
     members: tuple[tuple[int, int, DeviceState], ...]  # installation, point, devices: one row per hypothesis
     states: tuple[tuple[DeviceState, ...], ...]  # per installation, in the order of its rows
     _cache: dict[tuple[str, str], dict[str, tuple[float, ...]] | None] = field(default_factory=dict)
+    _hypotheses: dict[tuple[tuple[str, float], ...], Hypotheses] = field(default_factory=dict)
+    _latents: dict[tuple[str, str], tuple[bool, ...]] = field(default_factory=dict)
+    _readings: dict[tuple[str, str], tuple[float, ...]] = field(default_factory=dict)
     _openings: dict[tuple[int, str], list[tuple[float, float, float]] | None] = field(default_factory=dict)
 
     def outcomes(self, kind: str, name: str) -> dict[str, tuple[float, ...]] | None:
@@ -101,6 +104,31 @@ class Evidence:
             if expected not in near:
                 near[expected] = (1 - WRONG) * _mass(expected, value / 1.15, value * 1.15, test.unit) + WRONG * 0.04
         return tuple(near[expected] for expected in predicted)
+
+    def reweighted(self, factors: tuple[tuple[str, float], ...]) -> Hypotheses:
+        """The hypotheses with the prior of some causes multiplied: (cause, factor) pairs."""
+        if factors not in self._hypotheses:
+            known, factor = self.hypotheses, dict(factors)
+            names = [known.causes[cause] for cause in known.cause_of]
+            weights = [prior * factor.get(name, 1.0) for prior, name in zip(known.prior, names, strict=True)]
+            self._hypotheses[factors] = hypotheses_of(names, weights)
+        return self._hypotheses[factors]
+
+    def having(self, name: str, value: str) -> tuple[bool, ...]:
+        """For every hypothesis whether the unknown fact `name` has this value in it."""
+        key = (name, value)
+        if key not in self._latents:
+            self._latents[key] = tuple(
+                any(latent.name == name and latent.value == value for latent in self.point(index).latents) for index in range(len(self.members))
+            )
+        return self._latents[key]
+
+    def readings(self, context: str, name: str) -> tuple[float, ...]:
+        """For every hypothesis a named reading (A, V or ohm) in a context; 0 where it has none, empty where the context cannot be made."""
+        key = (context, name)
+        if key not in self._readings:
+            self._readings[key] = tuple(row.readings.get(name, 0.0) for row in _outlook_rows(self, context) or [])
+        return self._readings[key]
 
     def point(self, index: int) -> Point:
         where, point, _ = self.members[index]
@@ -279,9 +307,9 @@ READING_NAMES = {"neutral_ground_ohm": "meter_ohm", "insulation_ohm": "meter_ohm
 
 def _predicted_readings(found: Evidence, test: Test) -> list[float]:
     """The reading each hypothesis predicts, in the test's unit."""
-    rows = _outlook_rows(found, test.context) or []
     name = READING_NAMES.get(test.reading, test.reading)
-    return [max(row.readings.get(name, 0.0) * PER_UNIT[test.unit], FLOOR_READING[test.unit]) for row in rows]
+    low, high = FLOOR_READING[test.unit], LIMITS[test.unit][1]
+    return [min(max(value * PER_UNIT[test.unit], low), high) for value in found.readings(test.context, name)]
 
 
 def _mass(expected: float, low: float, high: float, unit: str) -> float:

@@ -23,7 +23,7 @@ if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
 
 NAMED = 0.90  # probability from which a cause, or a group, is named
-INFORMATIVE_BITS = 0.01  # below this a test is not worth proposing
+INFORMATIVE_BITS = 0.02  # below this a test is not worth proposing
 TESTS_BEHIND_A_NAME = 2  # hands-on tests before a cause is named, as long as one more could still tell something
 MISFITS_BEFORE_UNKNOWN = 2  # the first misfit is repeated; the second says that no known cause fits
 LARGEST_GROUP = 3  # a longer list is no answer

@@ -1,8 +1,8 @@
 """Exact Bayes over hypotheses, the sums per cause, and what cannot be told apart. Knows no ohms.
 
 A hypothesis is one cause at one severity under one set of unknown facts. A likelihood is a sequence with one number per
-hypothesis: the probability of what was reported, given that hypothesis. Sums are exactly rounded (math.fsum), so results
-do not depend on the order of the terms nor on the Python release.
+hypothesis: the probability of what was reported, given that hypothesis. Logarithms and totals are summed exactly (math.fsum);
+sums over the hypotheses of one cause are plain, because they are the inner loop of every step.
 """
 
 from __future__ import annotations
@@ -35,12 +35,14 @@ class Hypotheses:
     cause_of -- for every hypothesis the index of its cause
     prior    -- for every hypothesis its probability, above 0, summing to 1
     members  -- for every cause the indices of its hypotheses
+    runs     -- the same as runs of neighbours, (first, last + 1), over which sums are taken without looking indices up
     """
 
     causes: tuple[str, ...]
     cause_of: tuple[int, ...]
     prior: tuple[float, ...]
     members: tuple[tuple[int, ...], ...] = field(init=False, repr=False, compare=False)
+    runs: tuple[tuple[tuple[int, int], ...], ...] = field(init=False, repr=False, compare=False)
 
     def __post_init__(self) -> None:
         """Check the lengths and the prior, and index the hypotheses by cause."""
@@ -52,6 +54,18 @@ class Hypotheses:
         for index, cause in enumerate(self.cause_of):
             members[cause].append(index)
         object.__setattr__(self, "members", tuple(map(tuple, members)))  # the class is frozen: an index, derived once
+        object.__setattr__(self, "runs", tuple(map(_runs, members)))
+
+
+def _runs(indices: Sequence[int]) -> tuple[tuple[int, int], ...]:
+    """Rising indices as runs of neighbours."""
+    found: list[tuple[int, int]] = []
+    for index in indices:
+        if found and found[-1][1] == index:
+            found[-1] = (found[-1][0], index + 1)
+        else:
+            found.append((index, index + 1))
+    return tuple(found)
 
 
 def hypotheses_of(causes: Sequence[str], weights: Sequence[float]) -> Hypotheses:
@@ -95,12 +109,12 @@ def posterior(hypotheses: Hypotheses, likelihoods: Iterable[Sequence[float]]) ->
 
 def by_cause(hypotheses: Hypotheses, values: Sequence[float]) -> list[float]:
     """Sum of one value per hypothesis over the hypotheses of each cause, in the order of `hypotheses.causes`."""
-    return [math.fsum(map(values.__getitem__, members)) for members in hypotheses.members]
+    return [math.fsum(sum(values[first:last]) for first, last in runs) for runs in hypotheses.runs]
 
 
 def joint_by_cause(hypotheses: Hypotheses, weights: Sequence[float], likelihood: Sequence[float]) -> list[float]:
     """P(cause and report) for each cause, in the order of `hypotheses.causes`."""
-    return by_cause(hypotheses, list(map(mul, weights, likelihood)))
+    return [math.fsum(sum(map(mul, weights[first:last], likelihood[first:last])) for first, last in runs) for runs in hypotheses.runs]
 
 
 def cause_marginal(hypotheses: Hypotheses, weights: Sequence[float]) -> dict[str, float]:
@@ -151,22 +165,25 @@ def groups(
     return [tuple(hypotheses.causes[cause] for cause in group) for group in found]
 
 
-def likelihood_ratio(hypotheses: Hypotheses, weights_before: Sequence[float], likelihood: Sequence[float], cause: str) -> float:
-    """How many times as likely the report is under `cause` as under all the rest: P(report | cause) / P(report | not cause).
+def likelihood_ratios(hypotheses: Hypotheses, weights_before: Sequence[float], likelihood: Sequence[float]) -> dict[str, float]:
+    """For each cause how many times as likely the report is under it as under all the rest: P(report | cause) / P(report | not cause).
 
     Each side is averaged under `weights_before`. 1 when one side has no weight left to average over, infinite when only the
     cause allows the report.
     """
-    place = hypotheses.causes.index(cause)
     marginal = by_cause(hypotheses, weights_before)
     joint = joint_by_cause(hypotheses, weights_before, likelihood)
-    weight, shared = marginal.pop(place), joint.pop(place)
-    rest, rest_shared = math.fsum(marginal), math.fsum(joint)
-    if weight <= 0.0 or rest <= 0.0:
-        return 1.0
-    if rest_shared <= 0.0:
-        return math.inf if shared > 0.0 else 1.0
-    return (shared / weight) / (rest_shared / rest)
+    found = {}
+    for place, cause in enumerate(hypotheses.causes):
+        rest = math.fsum((*marginal[:place], *marginal[place + 1 :]))
+        rest_shared = math.fsum((*joint[:place], *joint[place + 1 :]))
+        if marginal[place] <= 0.0 or rest <= 0.0:
+            found[cause] = 1.0
+        elif rest_shared <= 0.0:
+            found[cause] = math.inf if joint[place] > 0.0 else 1.0
+        else:
+            found[cause] = (joint[place] / marginal[place]) / (rest_shared / rest)
+    return found
 
 
 def misfit(

@@ -5,7 +5,9 @@ Each context is factored once per rewiring; severities and unknown facts are clo
 
 from __future__ import annotations
 
+import dataclasses
 import itertools
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
@@ -19,6 +21,7 @@ from strayline.parts import Installation, Part, base
 
 ROLES = ("feeder", "pedestal", "aboard")
 INFINITE_OHMS = 1e12
+HULL = "hull_v"  # the reading of the own hull against the water
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,6 +79,7 @@ class Predictions:
     installation: Installation
     points: tuple[Point, ...]
     _cache: dict[str, tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None] = field(default_factory=dict)
+    _blades: dict[str, float] = field(default_factory=dict)
 
     def outlooks(self, context: str) -> tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None:
         """The watches of a context and the outlook of every point; None when the stated parts cannot make this context."""
@@ -83,19 +87,29 @@ class Predictions:
             self._cache[context] = _outlooks(self.installation, self.points, context)
         return self._cache[context]
 
+    def blade_volts(self, context: str) -> float:
+        """The highest voltage on any bare blade in the state a test leaves, every load aboard on, nothing else wrong."""
+        if context not in self._blades:
+            left = contexts.left_behind(context, self.installation)
+            solution = None if left is None or not left.blades else solve.solve(left)
+            self._blades[context] = max((abs(solution.voltage(blade.node) or 0.0) for blade in left.blades), default=0.0) if left and solution else 0.0
+        return self._blades[context]
+
 
 def predictions(installation: Installation, latents: Sequence[Sequence[Latent]]) -> Predictions:
     """All points of an installation: causes that can be there, their severities, and every combination of unknown facts."""
     system = SYSTEMS[installation.of_kind("supply")[0].text("system")]
-    points = []
+    points: list[Point] = []
     for cause in CAUSES:
+        found = []
         for severity in severities(cause.id, installation, system.volts):
             for combination in itertools.product(*latents):
-                share = severity.weight
-                for latent in combination:
-                    share *= latent.share
-                if share > 0:
-                    points.append(Point(cause.id, severity.fault, tuple(combination), share))
+                known = {latent.name: latent.value for latent in combination}
+                if cause.requires and known.get(cause.requires[0], cause.requires[1]) != cause.requires[1]:
+                    continue
+                found.append(Point(cause.id, severity.fault, combination, severity.weight * math.prod(latent.share for latent in combination)))
+        total = math.fsum(point.share for point in found)
+        points += [dataclasses.replace(point, share=point.share / total) for point in found]
     return Predictions(installation, tuple(points))
 
 
@@ -179,7 +193,8 @@ class _Prepared:
             ground = [(f"{cord}.G", 1)] if f"{cord}.G" in present else []
             found += [("cord_sum_a", solve.probe_current(self.factors, live + ground)), ("live_sum_a", solve.probe_current(self.factors, live))]
             found.append(("ground_a", solve.probe_current(self.factors, ground)))
-            found += [(f"hull:{hull}", solve.probe_voltage(self.factors, node, EARTH)) for hull, node in network.hulls if node in self.nodes]
+            own = [node for hull, node in network.hulls if node in self.nodes and any(part.id == hull for part in mine)]
+            found += [(HULL, solve.probe_voltage(self.factors, node, EARTH)) for node in own[:1]]
         if contexts.METER in present:
             found.append(("meter_a", solve.probe_current(self.factors, [(contexts.METER, 1)])))
         return found

@@ -47,9 +47,9 @@ def diagnosis(case: Case) -> dict[str, Any]:
 
 def _groups(answered: Session) -> list[tuple[str, ...]]:
     """Causes that no test open to this person tells apart."""
-    assert answered.evidence is not None
+    assert answered.evidence is not None and answered.hypotheses is not None
     allowed = [Candidate(test, TEST[test].minutes, outcomes) for test in answered.allowed if (outcomes := answered.evidence.outcomes("test", test))]
-    return groups(session.hypotheses_now(answered), answered.weights, [candidate.outcomes for candidate in allowed])
+    return groups(answered.hypotheses, answered.weights, [candidate.outcomes for candidate in allowed])
 
 
 def residuals_text(found: dict[str, Any]) -> str:

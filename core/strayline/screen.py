@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import importlib
 import math
+from operator import truediv
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -15,9 +16,9 @@ from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, GATE_SIGNS, QUESTION, UNKNOWN
 from strayline.catalogue.tests import TEST
 from strayline.likelihood import WRONG
-from strayline.posterior import likelihood_ratio
-from strayline.predict import ROLES
-from strayline.session import CANNOT, FIXED, LOOKS, SETUP, Answer, Session, choices_of, hypotheses_now
+from strayline.posterior import likelihood_ratios
+from strayline.predict import HULL, ROLES
+from strayline.session import CANNOT, FIXED, LOOKS, OVER_RANGE, OVER_UNITS, SETUP, Answer, Session, choices_of
 
 Screen = dict[str, Any]
 Words = Mapping[str, "str | tuple[str, ...]"]
@@ -101,6 +102,8 @@ def _test(session: Session, speech: _Speech, test_id: str) -> Screen:
     test = TEST[test_id]
     number = test.model == "number"
     choices = [] if number else [{"value": outcome, "label": speech.say(f"test.{test_id}.{outcome}")} for outcome in test.outcomes]
+    if test.unit in OVER_UNITS:
+        choices.append({"value": OVER_RANGE, "label": speech.say("test.over_range")})
     choices.append({"value": UNKNOWN, "label": speech.say("question.unknown")})
     choices.append({"value": CANNOT, "label": speech.say("test.cannot")})
     legend = speech.say(f"test.{test_id}.ask") if number else speech.say("test.ask")
@@ -192,22 +195,34 @@ def current_text(amperes: float) -> str:
 def _ranking(session: Session, speech: _Speech) -> list[Screen]:
     assert session.marginal is not None
     rows = []
+    spoken = _spoken(session)
     for place, cause in enumerate(_ranked(session)[:SHOWN_CAUSES]):
         share = session.marginal[cause]
         if place and share < SHOWN_SHARE:
             break
-        told: Screen = {"numbers": [], "for": [], "against": []} if place > 2 else _why(session, speech, cause)
+        told: Screen = {"numbers": [], "for": [], "against": []} if place > 2 else _why(session, speech, cause, spoken)
         rows.append({
             "cause": cause, "kind": CAUSE[cause].kind, "title": speech.say(f"cause.{cause}.title"), "percent": percent(share), "share": f"{share:.4f}", **told,
         })  # fmt: skip
     return rows
 
 
-def _why(session: Session, speech: _Speech, cause: str) -> Screen:
+def _spoken(session: Session) -> list[dict[str, float]]:
+    """For every observation, per cause, how many times as likely it was, seen with all the others already in."""
+    assert session.hypotheses is not None
+    found = []
+    for observation in session.observations:
+        before = list(map(truediv, session.weights, observation.likelihood))
+        found.append(likelihood_ratios(session.hypotheses, before, observation.likelihood))
+    return found
+
+
+def _why(session: Session, speech: _Speech, cause: str, spoken: list[dict[str, float]]) -> Screen:
     """The residual at each device and the answers that speak most for and against one cause."""
     evidence = session.evidence
     assert evidence is not None
-    hypotheses = hypotheses_now(session)
+    hypotheses = session.hypotheses
+    assert hypotheses is not None
     place = hypotheses.causes.index(cause)
     best = max(hypotheses.members[place], key=lambda index: (session.weights[index], -index))
     where, number, _ = evidence.members[best]
@@ -226,13 +241,12 @@ def _why(session: Session, speech: _Speech, cause: str) -> Screen:
                 else:
                     said = speech.say(f"verdict.{verdict.replace(' ', '_')}")
                     numbers.append(speech.say("why.residual", device=speech.say(f"device.{role}"), current=current_text(amperes), verdict=said))
-        hull = outlook.readings.get("hull:hull", 0.0)
+        hull = outlook.readings.get(HULL, 0.0)
         if hull >= 0.5:
             numbers.append(speech.say("why.hull", volts=f"{hull:.1f} V" if hull < 9.95 else f"{hull:.0f} V"))
     told: list[tuple[float, str]] = []
-    for observation in session.observations:
-        before = [weight / likelihood for weight, likelihood in zip(session.weights, observation.likelihood, strict=True)]
-        ratio = likelihood_ratio(hypotheses, before, observation.likelihood, cause)
+    for observation, ratios in zip(session.observations, spoken, strict=True):
+        ratio = ratios[cause]
         told.append((ratio, _quoted(session, speech, observation.answer, ratio)))
     speak_for = sorted((pair for pair in told if pair[0] >= TELLING_RATIO), key=lambda pair: -pair[0])[:3]
     against = sorted((pair for pair in told if pair[0] <= 1 / TELLING_RATIO), key=lambda pair: pair[0])[:3]
@@ -258,8 +272,8 @@ def _value(speech: _Speech, answer: Answer) -> str:
     test = TEST.get(answer.question)
     if answer.value == UNKNOWN:
         return speech.say("question.unknown")
-    if answer.value == CANNOT:
-        return speech.say("test.cannot")
+    if answer.value in (CANNOT, OVER_RANGE):
+        return speech.say(f"test.{answer.value}")
     if answer.question == FIXED:
         return speech.say(f"cause.{answer.subject}.title") if answer.subject in CAUSE else ""
     if test is not None and test.model == "number":

@@ -13,7 +13,7 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
-from strayline import arrangements, contexts, likelihood, solve
+from strayline import arrangements, contexts, likelihood
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
 from strayline.catalogue.tests import ROLES, TEST, TESTS, TOOLS, Test
@@ -24,10 +24,12 @@ from strayline.likelihood import LIMITS, Evidence
 from strayline.next_test import NAMED, Candidate, choose, leading_group, stop, verification
 from strayline.parts import Installation, read
 from strayline.posterior import Hypotheses, cause_marginal, misfit, posterior
-from strayline.predict import Latent, predictions
+from strayline.predict import HULL, Latent, predictions
 from strayline.units import QuantityError, parse_quantity
 
 CANNOT = "cannot"
+OVER_RANGE = "over_range"  # the meter shows no end
+OVER_UNITS = ("ohm", "Mohm")  # where that is a reading of its own
 FIXED = "fixed"
 SETUP = ("role", "tools", "supply", "plug", "pedestal_device", "aboard_device")  # facts that choose tables or tests, not evidence
 LOOKS = ("afloat", "neighbour", "inverter")  # facts that are evidence about latents, asked when they tell something
@@ -92,7 +94,7 @@ class Session:
     group: tuple[str, ...] = ()
     evidence: Evidence | None = None
     weights: tuple[float, ...] = ()
-    prior: tuple[float, ...] = ()
+    hypotheses: Hypotheses | None = None
     observations: tuple[Observation, ...] = ()
     marginal: Mapping[str, float] | None = None
     misfits: tuple[int, ...] = ()
@@ -130,7 +132,7 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
 
 def _problem(answer: Answer) -> Problem | None:
     """What is wrong with an answer's value, if anything."""
-    if answer.value in (UNKNOWN, CANNOT) or answer.question == FIXED:
+    if answer.value in (UNKNOWN, CANNOT) or answer.question == FIXED or _over_range(answer):
         known = answer.question != FIXED or answer.subject in CAUSE
         return None if known else Problem(answer, "problem.unknown_choice", {})
     test = TEST.get(answer.question)
@@ -144,6 +146,10 @@ def _problem(answer: Answer) -> Problem | None:
     if not answer.value.strip():
         return Problem(answer, "problem.no_choice", {})
     return None if answer.value in choices else Problem(answer, "problem.unknown_choice", {})
+
+
+def _over_range(answer: Answer) -> bool:
+    return answer.value == OVER_RANGE and answer.question in TEST and TEST[answer.question].unit in OVER_UNITS
 
 
 def _halted(ordered: Sequence[Answer]) -> str | None:
@@ -181,13 +187,6 @@ def choices_of(question: str, facts: Mapping[str, str]) -> tuple[str, ...]:
     return choices
 
 
-def hypotheses_now(session: Session) -> Hypotheses:
-    """The hypotheses of a session with the prior its answers left (fixed causes, home-made wiring)."""
-    assert session.evidence is not None
-    known = session.evidence.hypotheses
-    return dataclasses.replace(known, prior=session.prior)
-
-
 # --- inference -----------------------------------------------------------------------------------------------------
 
 
@@ -222,26 +221,13 @@ def inverter_latents() -> list[Latent]:
     return [Latent("inverter", "yes", 0.3, (relay,)), Latent("inverter", "no", 0.7)]
 
 
-def _prior(evidence: Evidence, facts: Mapping[str, str], fixed: Sequence[str]) -> tuple[float, ...]:
-    """Prior of every hypothesis: less of what was fixed, more of what home-made wiring brings."""
-    factor = {cause: FIXED_WEIGHT for cause in fixed}
-    if facts.get("plug") == "homemade":
-        factor |= HOMEMADE_WEIGHT
-    weights = list(evidence.hypotheses.prior)
-    for index in range(len(weights)):
-        point = evidence.point(index)
-        weights[index] *= factor.get(point.cause, 1.0)
-        if point.cause == "inverter_bond" and any(latent.name == "inverter" and latent.value == "no" for latent in point.latents):
-            weights[index] *= 1e-6
-    total = math.fsum(weights)
-    return tuple(weight / total for weight in weights)
-
-
 def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fixed: tuple[str, ...], installation: object) -> Session:
     setup = tuple(sorted((name, value) for name, value in facts.items() if name not in ("role", "tools")))
     evidence = _evidence(setup, "" if installation is None else json.dumps(installation, sort_keys=True))
-    prior = _prior(evidence, facts, fixed)
-    hypotheses = dataclasses.replace(evidence.hypotheses, prior=prior)
+    factors = {cause: FIXED_WEIGHT for cause in fixed}
+    if facts.get("plug") == "homemade":
+        factors |= HOMEMADE_WEIGHT
+    hypotheses = evidence.reweighted(tuple(sorted(factors.items())))
     observations = tuple(found for answer in ordered if (found := _observation(evidence, answer, epoch)))
     weights = posterior(hypotheses, [observation.likelihood for observation in observations])
     marginal = cause_marginal(hypotheses, weights)
@@ -253,7 +239,7 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     looks = [Candidate(look, FREE_MINUTES, outcomes) for look in LOOKS if look not in looked and (outcomes := evidence.outcomes("question", look))]
     physical = sum(answer.question in TEST and answer.value not in (UNKNOWN, CANNOT) for answer in ordered if answer.seq > epoch)
     session = Session(
-        ordered, facts, evidence=evidence, weights=weights, prior=prior, observations=observations, marginal=marginal, misfits=misfits,
+        ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal, misfits=misfits,
         tests_done=physical, allowed=tuple(test.id for test in tests),
     )  # fmt: skip
     if _dangerous(evidence, weights):
@@ -293,19 +279,16 @@ def _observation(evidence: Evidence, answer: Answer, epoch: int) -> Observation 
     if outcomes is None:
         return None
     if test is not None and test.model == "number":
-        value = parse_quantity(answer.value, test.unit, *LIMITS[test.unit])
+        low, high = LIMITS[test.unit]
+        value = high if _over_range(answer) else parse_quantity(answer.value, test.unit, low, high)
         return Observation(answer, evidence.reading(test, value), len(outcomes))
     return Observation(answer, outcomes[answer.value], len(outcomes))
 
 
 def _dangerous(evidence: Evidence, weights: Sequence[float]) -> bool:
     """Whether the boat's metal stands at a dangerous voltage in more than a small share of what is still possible."""
-    live = 0.0
-    for (where, number, _), weight in zip(evidence.members, weights, strict=True):
-        found = evidence.predicted[where].outlooks(contexts.AS_FOUND)
-        if found and found[1][number].readings.get("hull:hull", 0.0) > DANGEROUS_HULL_VOLTS:
-            live += weight
-    return live > DANGER_SHARE
+    volts = evidence.readings(contexts.AS_FOUND, HULL)
+    return math.fsum(weight for weight, value in zip(weights, volts, strict=True) if value > DANGEROUS_HULL_VOLTS) > DANGER_SHARE
 
 
 # --- who may do what -----------------------------------------------------------------------------------------------
@@ -321,7 +304,7 @@ def refusal(test: Test, facts: Mapping[str, str], evidence: Evidence, weights: S
         return "tool"
     if any(not _holds(need, facts, evidence, weights) for need in test.needs):
         return "need"
-    if test.energises and any(_live_blades(one.installation, test.context) for one in evidence.predicted):
+    if test.energises and any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in evidence.predicted):
         return "live_blades"
     return None
 
@@ -337,18 +320,5 @@ def _holds(need: str, facts: Mapping[str, str], evidence: Evidence, weights: Seq
     if need == "y_in_use":
         return plug == "combining_y"
     if need == "inverter":
-        known = [latent.value == "yes" for index in range(len(weights)) for latent in evidence.point(index).latents if latent.name == "inverter"]
-        return bool(known) and math.fsum(weight for weight, yes in zip(weights, known, strict=False) if yes) > 0.2
+        return math.fsum(weight for weight, yes in zip(weights, evidence.having("inverter", "yes"), strict=True) if yes) > 0.2
     raise ValueError(f"no such need: {need}")
-
-
-@functools.lru_cache(maxsize=256)
-def _live_blades_of(network: solve.Network) -> bool:
-    solution = solve.solve(network)
-    return any(abs(solution.voltage(blade.node) or 0.0) > LIVE_BLADE_VOLTS for blade in network.blades)
-
-
-def _live_blades(installation: Installation, context: str) -> bool:
-    """Whether the state a test leaves would put voltage on a bare blade, with every load aboard switched on."""
-    left = contexts.left_behind(context, installation)
-    return left is not None and _live_blades_of(left)

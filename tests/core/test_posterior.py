@@ -16,7 +16,7 @@ from strayline.posterior import (
     cause_marginal,
     groups,
     hypotheses_of,
-    likelihood_ratio,
+    likelihood_ratios,
     misfit,
     posterior,
     predictions,
@@ -200,16 +200,16 @@ def test_ratio_is_the_change_of_odds(case: tuple[Hypotheses, list[list[float]]])
             rest_before = sum(value for other, value in before.items() if other != cause)
             rest_after = sum(value for other, value in after.items() if other != cause)
             expected = (after[cause] / rest_after) / (before[cause] / rest_before)
-            assert likelihood_ratio(hypotheses, hypotheses.prior, likelihood, cause) == pytest.approx(expected, rel=1e-9)
+            assert likelihood_ratios(hypotheses, hypotheses.prior, likelihood)[cause] == pytest.approx(expected, rel=1e-9)
 
 
 def test_ratio_at_its_ends() -> None:
     """A report only the cause allows counts infinitely for it, one it forbids counts zero, and without a rival it says nothing."""
     hypotheses = two_causes()
-    assert likelihood_ratio(hypotheses, hypotheses.prior, [1, 0, 0], "bond") == math.inf
-    assert likelihood_ratio(hypotheses, hypotheses.prior, [0, 1, 0], "bond") == 0
-    assert likelihood_ratio(hypotheses, [1, 0, 0], [1, 1, 1], "bond") == 1
-    assert likelihood_ratio(hypotheses, hypotheses.prior, [0, 0, 0], "bond") == 1
+    assert likelihood_ratios(hypotheses, hypotheses.prior, [1, 0, 0])["bond"] == math.inf
+    assert likelihood_ratios(hypotheses, hypotheses.prior, [0, 1, 0])["bond"] == 0
+    assert likelihood_ratios(hypotheses, [1, 0, 0], [1, 1, 1])["bond"] == 1
+    assert likelihood_ratios(hypotheses, hypotheses.prior, [0, 0, 0])["bond"] == 1
 
 
 def test_misfits_of_the_leader_alone() -> None:

@@ -83,7 +83,7 @@ def _reader(key: str) -> str:
 
 
 def _expected() -> set[str]:
-    keys = {"question.unknown", "test.ask", "test.cannot", "kind.fault", "kind.arrangement", "order.connect", "order.disconnect"}
+    keys = {"question.unknown", "test.ask", "test.cannot", "test.over_range", "kind.fault", "kind.arrangement", "order.connect", "order.disconnect"}
     keys |= {f"question.fixed.{part}" for part in ("text", "why", "done")}  # asked of a cause, so it stands in no table
     keys |= {"gate.title", "gate.lead", "gate.none", "gate.unknown", *(f"gate.{sign}" for sign in GATE_SIGNS)}
     keys |= {"stop.title", "stop.lead", "tonight.title", "tonight.lead", "tonight.orders", "cautions.title", "cautions.lines"}

@@ -31,6 +31,7 @@ class Cause:
     lethal: bool = False
     source: str = "common practice"
     timing: dict[str, float] = field(default_factory=dict)
+    requires: tuple[str, str] | None = None
 
 
 _AT_ONCE = {"computed": 0.90, "minutes": 0.03, "random": 0.05, "wet": 0.02}
@@ -44,7 +45,7 @@ CAUSES: tuple[Cause, ...] = (
     Cause("summed_filters", "fault", 0.05, 0.06, "technician", timing={"computed": 0.70, "minutes": 0.05, "random": 0.23, "wet": 0.02}),
     Cause("panel_bond", "fault", 0.14, 0.06, "technician", True, timing=_AT_ONCE),
     Cause("frame_strap", "fault", 0.07, 0.01, "technician", True, timing=_AT_ONCE),
-    Cause("inverter_bond", "fault", 0.07, 0.06, "technician", True, timing=_AT_ONCE),
+    Cause("inverter_bond", "fault", 0.07, 0.06, "technician", True, timing=_AT_ONCE, requires=("inverter", "yes")),
     Cause("ground_neutral_exchanged", "fault", 0.04, 0.03, "technician", True, timing=_AT_ONCE),
     Cause("line_ground_exchanged", "fault", 0.004, 0.003, "technician", True, timing=_AT_ONCE),
     Cause("neutral_ahead_of_device", "fault", 0.03, 0.03, "technician", timing=_AT_ONCE),

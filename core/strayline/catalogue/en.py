@@ -634,6 +634,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     ),
     # --- tests ---
     "test.ask": "What did you see?",
+    "test.over_range": "OL: the meter shows no end",
     "test.cannot": "I can't do this one",
     "test.look_over.title": "Look at plug, cord, inlet and adapter",
     "test.look_over.steps": (
