@@ -106,8 +106,9 @@ def _write_runtime(folder: Path, pyodide: Path, resolver: list[Path]) -> None:
 def _plain_wheel(folder: Path) -> Path:
     python = bootstrap.environment("webui", HERE / "requirements.lock")
     command: list[str | Path] = ["-m", "hatchling", "build", "--target", "wheel", "--directory", folder]
-    if bootstrap.run(python, *command, cwd=bootstrap.ROOT, stdout=subprocess.DEVNULL):
-        raise BuildError("The core could not be made into a wheel; what hatchling said stands above.")
+    done = subprocess.run([python, *command], cwd=bootstrap.ROOT, check=False, capture_output=True, text=True)
+    if done.returncode:
+        raise BuildError(f"The core could not be made into a wheel: {done.stderr.strip()}")
     return next(folder.glob("*.whl"))
 
 

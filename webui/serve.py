@@ -39,13 +39,15 @@ class Handler(http.server.SimpleHTTPRequestHandler):
     extensions_map = _TYPES
 
     def end_headers(self) -> None:
+        """Add what we say of every file."""
         self.send_header("Content-Security-Policy", policy.HEADER)
         self.send_header("X-Content-Type-Options", "nosniff")
         self.send_header("Referrer-Policy", "no-referrer")
         self.send_header("Cache-Control", "no-cache")
         super().end_headers()
 
-    def list_directory(self, path: object) -> None:  # noqa: ARG002  (the base class gives it)
+    def list_directory(self, path: object) -> None:  # noqa: ARG002  (the base class names it)
+        """A folder without a page is not there."""
         self.send_error(404)
 
     def log_message(self, *args: object) -> None:
