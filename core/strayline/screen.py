@@ -108,7 +108,7 @@ def _test(session: Session, speech: _Speech, test_id: str) -> Screen:
     choices.append({"value": CANNOT, "label": speech.say("test.cannot")})
     legend = speech.say(f"test.{test_id}.ask") if number else speech.say("test.ask")
     facts = [
-        {"label": speech.say("fact.who"), "text": ", ".join(speech.say(f"who.{role}") for role in test.roles)},
+        {"label": speech.say("fact.who"), "text": speech.say(f"who.{test.roles[0]}")},
         {"label": speech.say("fact.tool"), "text": speech.say(f"tool.{test.tool}")},
         {"label": speech.say("fact.minutes"), "text": speech.say("fact.minutes.text", minutes=f"{test.minutes:g}")},
     ]
