@@ -111,8 +111,8 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
     for answer in ordered:
         if answer.question not in QUESTION and answer.question not in TEST and answer.question != FIXED:
             raise RequestError(f"no such question: {answer.question[:40]!r}", question=answer.question[:40])
-    problem = next((found for answer in ordered if (found := _problem(answer))), None)
     facts = _facts(ordered)
+    problem = next((found for answer in ordered if (found := _problem(answer, facts))), None)
     halted = _halted(ordered)
     if halted:
         return Session(ordered, facts, problem, halted)
@@ -130,8 +130,8 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
     return _inferred(ordered, facts, epoch, fixed, installation)
 
 
-def _problem(answer: Answer) -> Problem | None:
-    """What is wrong with an answer's value, if anything."""
+def _problem(answer: Answer, facts: Mapping[str, str]) -> Problem | None:
+    """What is wrong with an answer's value beside the other facts, if anything."""
     if answer.value in (UNKNOWN, CANNOT) or answer.question == FIXED or _over_range(answer):
         known = answer.question != FIXED or answer.subject in CAUSE
         return None if known else Problem(answer, "problem.unknown_choice", {})
@@ -142,7 +142,7 @@ def _problem(answer: Answer) -> Problem | None:
         except QuantityError as error:
             return Problem(answer, "", {"sentence": error.message})
         return None
-    choices = test.outcomes if test is not None else QUESTION[answer.question].choices
+    choices = test.outcomes if test is not None else choices_of(answer.question, facts)
     if not answer.value.strip():
         return Problem(answer, "problem.no_choice", {})
     return None if answer.value in choices else Problem(answer, "problem.unknown_choice", {})
@@ -164,7 +164,7 @@ def _halted(ordered: Sequence[Answer]) -> str | None:
 
 
 def _facts(ordered: Sequence[Answer]) -> dict[str, str]:
-    return {answer.question: answer.value for answer in ordered if answer.question in SETUP and _problem(answer) is None}
+    return {answer.question: answer.value for answer in ordered if answer.question in SETUP and _problem(answer, {}) is None}
 
 
 def _applies(question: str, facts: Mapping[str, str], installation: object) -> bool:
@@ -259,11 +259,14 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
 
 
 def _with(session: Session, **changes: object) -> Session:
-    """The session with its next step; before a test that restores power the gate is asked again in one line."""
+    """The session with its next step; before a test that restores power the gate is asked again in one line.
+
+    Only a line that was the last thing said counts: after anything else, things may have changed at the dock.
+    """
     test = changes.get("test")
     if isinstance(test, str) and TEST[test].energises:
-        cleared = any(answer.question == CLEAR.id and answer.subject == test and answer.value == "clear" for answer in session.answers)
-        if not cleared:
+        last = session.answers[-1]
+        if (last.question, last.subject, last.value) != (CLEAR.id, test, "clear"):
             changes["ask"] = (CLEAR.id, test)
     return dataclasses.replace(session, **changes)  # type: ignore[arg-type]
 
