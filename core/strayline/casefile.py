@@ -167,6 +167,8 @@ def _answer(row: object, number: int, path: str) -> Answer:
         raise CaseError(f"{path}.question", "no such question or test", question)
     if subject is not None and not isinstance(subject, str):
         raise CaseError(f"{path}.subject", "must be a name", subject)
+    if question == FIXED and subject not in CAUSE:
+        raise CaseError(f"{path}.subject", f"must be one of {', '.join(CAUSE)}", subject)
     if not isinstance(value, str) or len(value) > 200:
         raise CaseError(f"{path}.value", "must be text of at most 200 characters", value)
     if isinstance(seq, bool) or not isinstance(seq, int) or not 0 <= seq < 10**9:

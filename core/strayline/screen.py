@@ -18,7 +18,7 @@ from strayline.catalogue.tests import TEST
 from strayline.likelihood import WRONG
 from strayline.posterior import likelihood_ratios
 from strayline.predict import HULL, ROLES
-from strayline.session import CANNOT, FIXED, LOOKS, OVER_RANGE, OVER_UNITS, SETUP, Answer, Session, choices_of
+from strayline.session import CANNOT, DONE, FIXED, LOOKS, OVER_RANGE, OVER_UNITS, SETUP, Answer, Session, choices_of
 
 Screen = dict[str, Any]
 Words = Mapping[str, "str | tuple[str, ...]"]
@@ -160,7 +160,7 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
     }
     form = None
     if session.verdict in ("named", "group"):
-        done = [{"value": "done", "label": speech.say("question.fixed.done")}]
+        done = [{"value": DONE, "label": speech.say("question.fixed.done")}]
         form = _form(session, speech, FIXED, causes[0], "choice", speech.say("question.fixed.text"), done)
     return {"kind": "outcome", "title": title, "lead": lead, "verdict": verdict, "form": form}
 

@@ -31,6 +31,7 @@ CANNOT = "cannot"
 OVER_RANGE = "over_range"  # the meter shows no end
 OVER_UNITS = ("ohm", "Mohm")  # where that is a reading of its own
 FIXED = "fixed"
+DONE = "done"
 SETUP = ("role", "tools", "supply", "plug", "pedestal_device", "aboard_device")  # facts that choose tables or tests, not evidence
 LOOKS = ("afloat", "neighbour", "inverter")  # facts that are evidence about latents, asked when they tell something
 FIXED_WEIGHT = 0.05  # what is left of a cause's prior after it was fixed
@@ -111,6 +112,8 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
     for answer in ordered:
         if answer.question not in QUESTION and answer.question not in TEST and answer.question != FIXED:
             raise RequestError(f"no such question: {answer.question[:40]!r}", question=answer.question[:40])
+        if answer.question == FIXED and (answer.subject not in CAUSE or answer.value not in ("", DONE, UNKNOWN)):
+            raise RequestError(f"fixed names a cause and is {DONE}", subject=str(answer.subject)[:40], value=answer.value[:40])
     facts = _facts(ordered)
     problem = next((found for answer in ordered if (found := _problem(answer, facts))), None)
     halted = _halted(ordered)
@@ -133,8 +136,7 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
 def _problem(answer: Answer, facts: Mapping[str, str]) -> Problem | None:
     """What is wrong with an answer's value beside the other facts, if anything."""
     if answer.value in (UNKNOWN, CANNOT) or answer.question == FIXED or _over_range(answer):
-        known = answer.question != FIXED or answer.subject in CAUSE
-        return None if known else Problem(answer, "problem.unknown_choice", {})
+        return None
     test = TEST.get(answer.question)
     if test is not None and test.model == "number":
         try:
@@ -175,7 +177,7 @@ def _applies(question: str, facts: Mapping[str, str], installation: object) -> b
 
 def _epoch(ordered: Sequence[Answer]) -> tuple[int, tuple[str, ...]]:
     """The seq after which reports count, and the causes fixed so far."""
-    fixes = [answer for answer in ordered if answer.question == FIXED]
+    fixes = [answer for answer in ordered if answer.question == FIXED and answer.value != UNKNOWN]
     return (fixes[-1].seq if fixes else -1), tuple(answer.subject or "" for answer in fixes)
 
 
