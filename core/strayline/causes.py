@@ -15,9 +15,11 @@ from dataclasses import dataclass
 from strayline.catalogue.causes import CAUSE
 from strayline.components import CONNECTORS
 from strayline.errors import CaseError
-from strayline.installation import ELEMENT_TAPS, tap_node, zone_parts
+from strayline.installation import tap_node, zone_parts
 from strayline.parts import Installation, Part, base
 from strayline.network import Branch, Network, with_branches, without_branches
+
+SAME_POSITION = 1e-9  # share of an element: closer cuts are one
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,10 +91,10 @@ def effect(installation: Installation, network: Network, fault: Fault) -> Effect
     return _EFFECTS[fault.cause](installation, network, fault)
 
 
-def _part(installation: Installation, part_id: str, *kinds: str) -> Part:
+def _part(installation: Installation, part_id: str, *kinds: str, key: str = "at") -> Part:
     part = installation.index.get(part_id)
     if part is None or part.kind not in kinds:
-        raise CaseError("at", f"must be the id of a {' or '.join(kinds)}", part_id)
+        raise CaseError(key, f"must be the id of a {' or '.join(kinds)}", part_id)
     return part
 
 
@@ -112,24 +114,41 @@ def _appliance_leak(installation: Installation, network: Network, fault: Fault) 
     return Effect(network, (Shunt("leak", node, f"{load.id}.frame", _ohms(fault), "leak", load.id),))
 
 
+def _element(network: Network, load: Part) -> list[Branch]:
+    """What a load consists of, from its line end to its far end: one branch, or more where taps and earlier leaks cut it."""
+    starts = {
+        branch.from_node: branch
+        for branch in network.branches
+        if branch.owner == load.id and branch.kind == "load" and branch.id.startswith(f"{load.id}.")
+    }
+    chain, node = [], f"{load.id}.in"
+    while node in starts:
+        chain.append(starts[node])
+        node = starts[node].to_node
+    return chain
+
+
 def _leak_point(network: Network, load: Part, position: float) -> tuple[Network, str]:
-    """The node `position` along a load's element, made by cutting the element there when no tap is."""
+    """The node `position` along a load's element, made by cutting the element there when nothing has cut it yet."""
     if not 0 <= position <= 1:
         raise CaseError("position", "must be between 0 (line end) and 1", position)
-    if position == 0:
-        return network, f"{load.id}.in"
-    node = tap_node(load.id, position)
-    if load.flag("element") and position in ELEMENT_TAPS:
-        return network, node
-    cuts = (0.0, *ELEMENT_TAPS, 1.0) if load.flag("element") else (0.0, 1.0)
-    number = next(number for number in range(len(cuts) - 1) if position <= cuts[number + 1])
-    name = f"{load.id}.element{number}" if load.flag("element") else f"{load.id}.load"
-    whole = next(branch for branch in network.branches if branch.id == name)
-    if position == 1:
-        return network, whole.to_node
-    share = (position - cuts[number]) / (cuts[number + 1] - cuts[number])
+    chain = _element(network, load)
+    whole = sum(branch.impedance for branch in chain)
+    passed = 0.0
+    for branch in chain:
+        share = (branch.impedance / whole).real  # every piece has the same angle
+        if abs(position - passed) < SAME_POSITION:
+            return network, branch.from_node
+        if position < passed + share - SAME_POSITION:
+            return _cut(network, load, branch, (position - passed) / share, tap_node(load.id, position))
+        passed += share
+    return network, chain[-1].to_node
+
+
+def _cut(network: Network, load: Part, whole: Branch, share: float, node: str) -> tuple[Network, str]:
+    """The network with one branch of a load cut at `node`, `share` of it before; every window that encloses the load encloses the cut."""
     near = dataclasses.replace(whole, to_node=node, impedance=whole.impedance * share)
-    far = dataclasses.replace(whole, id=f"{name}b", from_node=node, impedance=whole.impedance * (1 - share))
+    far = dataclasses.replace(whole, id=f"{node}.beyond", from_node=node, impedance=whole.impedance * (1 - share))
     branches = tuple(near if branch is whole else branch for branch in network.branches)
     sensors = tuple(
         dataclasses.replace(sensor, zone=sensor.zone | {node}) if f"{load.id}.in" in sensor.zone else sensor for sensor in network.sensors
@@ -140,19 +159,25 @@ def _leak_point(network: Network, load: Part, position: float) -> tuple[Network,
 def _line_to_ground(kind: str) -> Callable[[Installation, Network, Fault], Effect]:
     def wet(installation: Installation, network: Network, fault: Fault) -> Effect:
         part = _part(installation, fault.at, *kind.split())
-        return Effect(network, (Shunt("leak", f"{part.id}.L1", f"{part.id}.G", _ohms(fault), "leak", part.id),))
+        end = f"{part.id}.a" if part.values.get("style") == "splitting_y" else part.id
+        return Effect(network, (Shunt("leak", f"{end}.L1", f"{end}.G", _ohms(fault), "leak", part.id),))
 
     return wet
 
 
 def _summed_filters(installation: Installation, network: Network, fault: Fault) -> Effect:
     """The stated capacitance, shared equally by the loads of the panel's boat, each at its own line terminal."""
-    loads = [part for part in own_parts(installation, fault.at or None) if part.kind == "load"]
+    loads = [part for part in _boat(installation, fault) if part.kind == "load"]
     farads = fault.nanofarads * 1e-9 / max(len(loads), 1)
     if not farads > 0:
         raise CaseError("nanofarads", "must be above zero nF", fault.nanofarads)
     ohms = -1j / (2 * math.pi * network.hertz * farads)
     return Effect(network, tuple(Shunt(f"filter.{load.id}", f"{load.id}.in", f"{load.id}.frame", ohms, "filter", load.id) for load in loads))
+
+
+def _boat(installation: Installation, fault: Fault) -> tuple[Part, ...]:
+    """The parts of the boat whose panel the fault names, else of the own boat."""
+    return own_parts(installation, _part(installation, fault.at, "panel").id if fault.at else None)
 
 
 def _panel_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
@@ -170,7 +195,7 @@ def _frame_strap(installation: Installation, network: Network, fault: Fault) -> 
 def _inverter_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
     """An inverter's own bond: with `spontaneous` 0 it is welded, with 1 it lasts only until shore power is accepted."""
     panel = _part(installation, fault.at, "panel")
-    absent_in = ("inverter_settled", "test_load", "one_load") if fault.spontaneous else ()
+    absent_in = ("inverter_settled",) if fault.spontaneous else ()
     return Effect(network, (Shunt("relay", f"{panel.id}.N", f"{panel.id}.G", _ohms(fault), "bond", panel.id, absent_in),))
 
 
@@ -192,19 +217,18 @@ def _exchanged(one: str, other: str) -> Callable[[Installation, Network, Fault],
 def _neutral_ahead_of_device(installation: Installation, network: Network, fault: Fault) -> Effect:
     """A load's neutral lands on the supply side of the device: its return passes outside the window."""
     device = _part(installation, fault.at, "main")
-    load = _part(installation, fault.load, "load")
+    load = _part(installation, fault.load, "load", key="load")
     ahead = next((branch.from_node for branch in network.branches if branch.id == f"{device.id}.N"), None)
-    returns = [branch for branch in network.branches if branch.owner == load.id and branch.kind == "load"]
     if ahead is None or load.text("across") == "L1-L2":
         raise CaseError("load", "must be a load with a neutral, behind a closed main", load.id)
-    last = returns[-1]
+    last = _element(network, load)[-1]
     moved = dataclasses.replace(last, to_node=ahead)
     return Effect(dataclasses.replace(network, branches=tuple(moved if branch is last else branch for branch in network.branches)))
 
 
 def _open_ground_with_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
     part = _part(installation, fault.at, "cord", "adapter", "inlet", "receptacle")
-    load = _part(installation, fault.load, "load")
+    load = _part(installation, fault.load, "load", key="load")
     opened = without_branches(network, [branch.id for branch in network.branches if branch.owner == part.id and branch.kind == "protective"])
     return Effect(opened, (Shunt("leak", f"{load.id}.in", f"{load.id}.frame", _ohms(fault), "leak", load.id),))
 
@@ -219,7 +243,7 @@ def _overload(installation: Installation, network: Network, fault: Fault) -> Eff
 
 def _joined_inlets(installation: Installation, network: Network, fault: Fault) -> Effect:
     """Two panels' neutral buses joined aboard; nothing to add where one panel takes both inlets."""
-    panels = [part for part in own_parts(installation, fault.at or None) if part.kind == "panel"]
+    panels = [part for part in _boat(installation, fault) if part.kind == "panel"]
     if len(panels) < 2:
         return Effect(network)
     return Effect(network, (Shunt("joined", f"{panels[0].id}.N", f"{panels[1].id}.N", fault.ohms or 0.005, "neutral", panels[0].id),))

@@ -308,7 +308,7 @@ def _load(part: Part, installation: Installation, wiring: _Wiring) -> None:
 
 def tap_node(part_id: str, position: float) -> str:
     """The node at a tap of a heating element, `position` from 0 (line end) to 1."""
-    return f"{part_id}.tap{round(position * 1000):d}"
+    return f"{part_id}.tap{position!r}"
 
 
 def _hull(part: Part, installation: Installation, wiring: _Wiring) -> None:

@@ -484,7 +484,7 @@ def blade_volts(rows: list[Row], blade: str) -> float | None:
 
 
 def test_one_tail_of_a_y() -> None:
-    """One tail loose: a 240 V load aboard puts the other leg's blade at 120 V; with none it hangs on nothing, and so does nobody's hand."""
+    """One tail loose: a 240 V load aboard puts the other leg's blade at 120 V; with none the blade hangs on nothing."""
     assert blade_volts(y_boat(SPLIT, load("cooler", "L1-L2", ohms=24), tail=""), "y.plug_b.L1") == pytest.approx(120, rel=1e-3)
     assert blade_volts(y_boat(SPLIT, load("kettle", ohms=12), tail=""), "y.plug_b.L1") is None
 
@@ -598,3 +598,27 @@ def test_crossings_add_up(file: Path) -> None:
         listed = [crossing for crossing in told["crossings"] if crossing["sensor"] == row["id"]]
         total = sum(cmath.rect(crossing["ma"], math.radians(crossing["angle_deg"] or 0)) for crossing in listed)
         assert abs(total) == pytest.approx(row["residual_ma"], abs=1e-3 * (1 + len(listed)))  # below 0.001 mA no angle is told
+
+
+def test_two_leaks_in_one_element() -> None:
+    """Two breaches of one element leak what each would alone, whichever is named first, and a neutral landed ahead still moves its end."""
+    rows = one_boat(SPLIT, "30a_125v", load("heater", ohms=20), afloat=False)
+    near, far = (Fault("appliance_leak", at="heater", ohms=50_000, position=position) for position in (0.1004, 0.6))
+    ahead = Fault("neutral_ahead_of_device", at="main", load="heater")
+    alone = sum(abs(solved(rows, fault).residual("outlet")) for fault in (near, far))
+    for faults in ((near, far), (far, near)):
+        both = solved(rows, *faults)
+        assert abs(both.residual("outlet")) == pytest.approx(alone, rel=1e-3)
+        assert abs(solved(rows, *faults, ahead).residual("main")) == pytest.approx(6, rel=1e-2)
+
+
+def test_a_wet_splitting_y_leaks() -> None:
+    """A wet splitting Y leaks the line voltage over its ohms, as any other adapter does."""
+    rows = [
+        *shore(SPLIT),
+        outlet("outlet", "50a_125_250v"),
+        part("y", "adapter", "outlet", style="splitting_y"),
+        *behind("y.a"),
+        *panel(),
+    ]
+    assert abs(solved(rows, Fault("wet_cord", at="y", ohms=4000)).residual("outlet")) == pytest.approx(120 / 4000, rel=1e-3)
