@@ -9,6 +9,10 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from strayline.causes import own_parts
+from strayline.components import CONNECTORS
+from strayline.parts import Installation
+
 UNKNOWN = "unknown"
 RawPart = dict[str, object]
 
@@ -41,6 +45,32 @@ def possible(facts: Mapping[str, str]) -> tuple[Arrangement, ...]:
                 found.append(Arrangement(system, way, share * part))
     total = sum(arrangement.share for arrangement in found)
     return tuple(Arrangement(one.supply, one.plug, one.share / total) for one in found)
+
+
+def stated(installation: Installation) -> dict[str, str]:
+    """The facts that a case file's own parts state, as answers to the questions about the set-up."""
+    mine = own_parts(installation)
+    outlets = [part for part in mine if part.kind == "receptacle" and installation.children(part.id)]
+    adapters = [part for part in mine if part.kind == "adapter"]
+    mains = [part for part in mine if part.kind == "main"]
+    if adapters:
+        style = adapters[0].text("style")
+        plug = style if style in ("combining_y", "splitting_y", "homemade") else "straight_adapter"
+    elif sum(part.kind == "inlet" for part in mine) > 1:
+        plug = "two_cords"
+    else:
+        plug = "one_cord_four_wire" if any(CONNECTORS[part.text("connector")].lines == 2 for part in outlets) else "one_cord"
+    return {
+        "supply": installation.of_kind("supply")[0].text("system"),
+        "plug": plug,
+        "pedestal_device": _device_answer([part.text("device") for part in outlets]),
+        "aboard_device": _device_answer([part.text("device") for part in mains]),
+    }
+
+
+def _device_answer(devices: list[str]) -> str:
+    """What a person would answer about these devices; the least of them decides."""
+    return "none" if "none" in devices or not devices else "class_a" if "class_a" in devices else "device_30"
 
 
 def parts(arrangement: Arrangement, facts: Mapping[str, str], *, neighbour: bool, afloat: bool) -> dict[str, object]:

@@ -16,8 +16,8 @@ from strayline.catalogue.causes import CAUSE
 from strayline.components import CONNECTORS
 from strayline.errors import CaseError
 from strayline.installation import tap_node, zone_parts
-from strayline.parts import Installation, Part, base
 from strayline.network import Branch, Network, with_branches, without_branches
+from strayline.parts import Installation, Part, base
 
 SAME_POSITION = 1e-9  # share of an element: closer cuts are one
 

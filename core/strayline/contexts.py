@@ -82,7 +82,7 @@ def switched(context: str, installation: Installation, network: Network) -> Netw
     """The network in this state. `network` is the (possibly faulted) network of the context's own installation."""
     name, _, detail = context.partition(":")
     mine = own_parts(installation)
-    if name in (AS_FOUND, "inverter_settled"):
+    if name == AS_FOUND:
         return network
     if name in ("pedestal_alone", "cord_alone"):
         kept = ("receptacle",) if name == "pedestal_alone" else ("receptacle", "cord")
@@ -96,7 +96,7 @@ def switched(context: str, installation: Installation, network: Network) -> Netw
     if name in ("light_load", "without_y", "other_pedestal"):
         light = {part.id for part in mine if part.kind == "load" and _watts(part) < LIGHT_WATTS}
         return _breakers_open(network, installation, mine, running=light)
-    if name == "test_load":
+    if name in ("test_load", "inverter_settled"):
         return _with_test_load(_breakers_open(network, installation, mine), installation, mine)
     if name == "suspect_out":
         return _without_owners(network, {part.id for part in mine if part.kind == "load" and part.flag("element")})
@@ -163,11 +163,16 @@ def meter_branch(panel: str) -> Branch:
 
 
 def with_all_loads(installation: Installation) -> Installation:
-    """The same parts with every load switched on: the state against which bare blades are judged."""
+    """The same parts with every load on and every breaker and main aboard closed: what bare blades are judged against.
+
+    A switch that is off now is on a minute later, with the same plug out.
+    """
     rows = _rows(installation)
     for row in rows.values():
         if row["kind"] == "load":
             row["on"] = True
+        if row["kind"] in ("breaker", "main"):
+            row["closed"] = True
     return read({"parts": list(rows.values())})
 
 

@@ -124,10 +124,13 @@ class Evidence:
         return self._latents[key]
 
     def readings(self, context: str, name: str) -> tuple[float, ...]:
-        """For every hypothesis a named reading (A, V or ohm) in a context; 0 where it has none, empty where the context cannot be made."""
+        """For every hypothesis a named reading (A, V or ohm) in a context, the highest over its single states.
+
+        0 where it has none; empty where the context cannot be made.
+        """
         key = (context, name)
         if key not in self._readings:
-            self._readings[key] = tuple(row.readings.get(name, 0.0) for row in _outlook_rows(self, context) or [])
+            self._readings[key] = tuple(_highest(self, context, name))
         return self._readings[key]
 
     def point(self, index: int) -> Point:
@@ -279,6 +282,17 @@ def _load_outcomes(found: Evidence) -> dict[str, tuple[float, ...]] | None:
         return None
     holds, one, every = [1 - high for _, high in rows], [high - low for low, high in rows], [low for low, _ in rows]
     return _reported({"holds_all": holds, "one_trips": one, "any_trips": every})
+
+
+def _highest(found: Evidence, context: str, name: str) -> list[float]:
+    values: list[float] = []
+    for where, one in enumerate(found.predicted):
+        made = [outlooks for state in contexts.expand(context, one.installation) if (outlooks := one.outlooks(state))]
+        if not made:
+            return []
+        tops = [max(outlook.readings.get(name, 0.0) for outlook in row) for row in zip(*(outlooks for _, outlooks in made), strict=True)]
+        values += [tops[number] for place, number, _ in found.members if place == where]
+    return values
 
 
 def _outlook_rows(found: Evidence, context: str) -> list[Outlook] | None:

@@ -148,7 +148,7 @@ def _read_part(row: object, path: str) -> tuple[Part, list[tuple[str, object, st
         else:
             raw = row[parameter.name]
             values[parameter.name] = _read_value(raw, parameter, f"{path}.{parameter.name}")
-            if raw == "unknown" or isinstance(raw, (list, tuple)) and parameter.type == NUMBER:
+            if raw == "unknown" or (isinstance(raw, (list, tuple)) and parameter.type == NUMBER):
                 assumed.append((f"{part_id}.{parameter.name}", values[parameter.name], parameter.unit))
     listed = values.get("from", "")
     parents = tuple(listed) if isinstance(listed, tuple) else (str(listed),) if kind != "supply" else ()

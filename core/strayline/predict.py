@@ -188,7 +188,7 @@ class _Prepared:
         found = []
         mine = own_parts(installation)
         cord = next((part.id for part in mine if part.kind == "cord"), None)
-        if self.context == contexts.AS_FOUND and cord:
+        if self.context in (contexts.AS_FOUND, "one_load") and cord:
             live = [(f"{cord}.{name}", 1) for name in ("L1", "L2", "N") if f"{cord}.{name}" in present]
             ground = [(f"{cord}.G", 1)] if f"{cord}.G" in present else []
             found += [("cord_sum_a", solve.probe_current(self.factors, live + ground)), ("live_sum_a", solve.probe_current(self.factors, live))]

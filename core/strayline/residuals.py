@@ -5,8 +5,8 @@ from __future__ import annotations
 from typing import Any
 
 from strayline import devices, solve
-from strayline.causes import applied, own_parts
 from strayline.casefile import Case
+from strayline.causes import applied, own_parts
 from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.network import Branch, Network

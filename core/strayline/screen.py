@@ -7,8 +7,8 @@ from __future__ import annotations
 
 import importlib
 import math
-from operator import truediv
 from collections.abc import Mapping, Sequence
+from operator import truediv
 from typing import Any
 
 from strayline import __version__, contexts, devices
@@ -145,6 +145,8 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
     share = math.fsum(session.marginal[cause] for cause in causes)
     fields = {"percent": percent(share), "title": speech.say(f"cause.{ranked[0]}.title"), "count": str(len(causes))}
     lead = speech.lines(f"verdict.{session.verdict}.lead", **fields)
+    if session.unwatched:
+        lead = [speech.say("verdict.unwatched.title") + ".", *speech.lines("verdict.unwatched.lead"), *lead]
     if session.misfits:
         lead.append(speech.say("progress.misfit", answers=_misfits(session, speech)))
     fixers = list(dict.fromkeys(CAUSE[cause].repair for cause in causes))

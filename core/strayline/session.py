@@ -14,10 +14,11 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from strayline import arrangements, contexts, likelihood
+from strayline.allowed import Situation, refusal, unwatched
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
-from strayline.catalogue.tests import ROLES, TEST, TESTS, TOOLS, Test
-from strayline.causes import Shunt
+from strayline.catalogue.tests import ROLES, TEST, TESTS
+from strayline.causes import Shunt, own_parts
 from strayline.errors import CaseError, RequestError
 from strayline.installation import EARTH
 from strayline.likelihood import LIMITS, Evidence
@@ -35,9 +36,8 @@ DONE = "done"
 SETUP = ("role", "tools", "supply", "plug", "pedestal_device", "aboard_device")  # facts that choose tables or tests, not evidence
 LOOKS = ("afloat", "neighbour", "inverter")  # facts that are evidence about latents, asked when they tell something
 FIXED_WEIGHT = 0.05  # what is left of a cause's prior after it was fixed
-LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
 DANGEROUS_HULL_VOLTS = 50.0  # conventional touch-voltage limit, IEC 60364-4-41
-DANGER_SHARE = 0.05
+DANGER_SHARE = 0.10
 HOMEMADE_WEIGHT = {"ground_neutral_exchanged": 6.0, "line_ground_exchanged": 40.0, "open_ground_with_leak": 4.0}
 FREE_MINUTES = 0.3
 
@@ -101,6 +101,7 @@ class Session:
     misfits: tuple[int, ...] = ()
     tests_done: int = 0
     allowed: tuple[str, ...] = ()
+    unwatched: bool = False
 
 
 def replay(answers: Sequence[Answer], installation: object = None) -> Session:
@@ -114,7 +115,8 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
             raise RequestError(f"no such question: {answer.question[:40]!r}", question=answer.question[:40])
         if answer.question == FIXED and (answer.subject not in CAUSE or answer.value not in ("", DONE, UNKNOWN)):
             raise RequestError(f"fixed names a cause and is {DONE}", subject=str(answer.subject)[:40], value=answer.value[:40])
-    facts = _facts(ordered)
+    known = None if installation is None else read(installation)
+    facts = _facts(ordered) | ({} if known is None else arrangements.stated(known))
     problem = next((found for answer in ordered if (found := _problem(answer, facts))), None)
     halted = _halted(ordered)
     if halted:
@@ -197,7 +199,8 @@ def _evidence(facts: tuple[tuple[str, str], ...], installation_json: str) -> Evi
     """The hypotheses and tables of one set-up, kept for the next answer."""
     stated = dict(facts)
     if installation_json:
-        return likelihood.evidence([(predictions(read(json.loads(installation_json)), [inverter_latents()]), 1.0)], stated)
+        known = read(json.loads(installation_json))
+        return likelihood.evidence([(predictions(known, [inverter_latents(known)]), 1.0)], stated)
     found = []
     for arrangement in arrangements.possible(stated):
         installation = read(arrangements.parts(arrangement, stated, neighbour=False, afloat=False))
@@ -213,20 +216,21 @@ def latents(installation: Installation) -> list[list[Latent]]:
     return [
         [Latent("afloat", "afloat", 0.93, (water,)), Latent("afloat", "ashore", 0.07)],
         [Latent("neighbour", "running", 0.35, (next_door,)), Latent("neighbour", "quiet", 0.65)],
-        inverter_latents(),
+        inverter_latents(installation),
     ]
 
 
-def inverter_latents() -> list[Latent]:
+def inverter_latents(installation: Installation) -> list[Latent]:
     """An inverter's own bond is closed while shore power is away: it is seen only with the cord out."""
-    relay = Shunt("idle_relay", "panel.N", "panel.G", 0.05 + 0j, "bond", "panel", contexts.ENERGISED)
+    panel = next((part.id for part in own_parts(installation) if part.kind == "panel"), "panel")
+    relay = Shunt("idle_relay", f"{panel}.N", f"{panel}.G", 0.05 + 0j, "bond", panel, contexts.ENERGISED)
     return [Latent("inverter", "yes", 0.3, (relay,)), Latent("inverter", "no", 0.7)]
 
 
 def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fixed: tuple[str, ...], installation: object) -> Session:
     setup = tuple(sorted((name, value) for name, value in facts.items() if name not in ("role", "tools")))
     evidence = _evidence(setup, "" if installation is None else json.dumps(installation, sort_keys=True))
-    factors = {cause: FIXED_WEIGHT for cause in fixed}
+    factors = dict.fromkeys(fixed, FIXED_WEIGHT)
     if facts.get("plug") == "homemade":
         factors |= HOMEMADE_WEIGHT
     hypotheses = evidence.reweighted(tuple(sorted(factors.items())))
@@ -234,19 +238,24 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     weights = posterior(hypotheses, [observation.likelihood for observation in observations])
     marginal = cause_marginal(hypotheses, weights)
     misfits = misfit(hypotheses, weights, [one.likelihood for one in observations], [one.outcomes for one in observations])
-    done = {answer.question for answer in ordered if answer.seq > epoch and answer.question in TEST}
+    reports = [(answer.question, answer.value) for answer in ordered if answer.seq > epoch and answer.question in TEST]
+    done = {test for test, _ in reports}
     looked = {answer.question for answer in ordered if answer.question in LOOKS}
-    tests = [test for test in TESTS if test.id not in done and not refusal(test, facts, evidence, weights)]
+    situation = Situation(facts, evidence, weights, reports)
+    tests = [test for test in TESTS if test.id not in done and not refusal(test, situation)]
     candidates = [Candidate(test.id, test.minutes, outcomes) for test in tests if (outcomes := evidence.outcomes("test", test.id))]
     looks = [Candidate(look, FREE_MINUTES, outcomes) for look in LOOKS if look not in looked and (outcomes := evidence.outcomes("question", look))]
-    physical = sum(answer.question in TEST and answer.value not in (UNKNOWN, CANNOT) for answer in ordered if answer.seq > epoch)
+    physical = sum(value not in (UNKNOWN, CANNOT) for _, value in reports)
     session = Session(
         ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal, misfits=misfits,
         tests_done=physical, allowed=tuple(test.id for test in tests),
+        unwatched=unwatched(facts, reports),
     )  # fmt: skip
     if _dangerous(evidence, weights):
         return _with(session, verdict="danger")
     why = stop(hypotheses, weights, candidates, physical, len(misfits))
+    if why and facts.get("plug") == "homemade":
+        return _with(session, verdict="danger")  # whatever it is, a hook-up that nobody can vouch for is not to be used
     if why:
         return _with(session, verdict=why, group=leading_group(hypotheses, weights, candidates) if why == "group" else ())
     leader = max(marginal, key=marginal.__getitem__)
@@ -254,7 +263,7 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     if marginal[leader] >= NAMED and chosen and chosen.id != "without_y":
         return _with(session, test=verification(hypotheses, weights, candidates, leader))
     if chosen is None:
-        return _with(session, verdict="unknown")
+        return _with(session, verdict="danger" if facts.get("plug") == "homemade" else "unknown")
     if chosen.id in LOOKS:
         return _with(session, ask=(chosen.id, None))
     return _with(session, test=chosen.id)
@@ -294,36 +303,3 @@ def _dangerous(evidence: Evidence, weights: Sequence[float]) -> bool:
     """Whether the boat's metal stands at a dangerous voltage in more than a small share of what is still possible."""
     volts = evidence.readings(contexts.AS_FOUND, HULL)
     return math.fsum(weight for weight, value in zip(weights, volts, strict=True) if value > DANGEROUS_HULL_VOLTS) > DANGER_SHARE
-
-
-# --- who may do what -----------------------------------------------------------------------------------------------
-
-
-def refusal(test: Test, facts: Mapping[str, str], evidence: Evidence, weights: Sequence[float]) -> str | None:
-    """Why a test may not be proposed to this person here: "role", "tool", "need" or "live_blades"; None when it may."""
-    role = facts.get("role", UNKNOWN)
-    if (role if role in ROLES else "user") not in test.roles:
-        return "role"
-    tool = facts.get("tools", UNKNOWN)
-    if TOOLS.index(test.tool) > (TOOLS.index(tool) if tool in TOOLS else 0):
-        return "tool"
-    if any(not _holds(need, facts, evidence, weights) for need in test.needs):
-        return "need"
-    if test.energises and any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in evidence.predicted):
-        return "live_blades"
-    return None
-
-
-def _holds(need: str, facts: Mapping[str, str], evidence: Evidence, weights: Sequence[float]) -> bool:
-    plug = facts.get("plug", UNKNOWN)
-    if need == "pedestal_device":
-        return facts.get("pedestal_device") in ("device_30", "class_a")
-    if need == "plain_cord":
-        return plug in ("one_cord", "one_cord_four_wire")
-    if need == "known_wiring":
-        return plug != "homemade"
-    if need == "y_in_use":
-        return plug == "combining_y"
-    if need == "inverter":
-        return math.fsum(weight for weight, yes in zip(weights, evidence.having("inverter", "yes"), strict=True) if yes) > 0.2
-    raise ValueError(f"no such need: {need}")

@@ -61,9 +61,9 @@ TESTS: tuple[Test, ...] = (
     Test("adapter_continuity", ("instructed", "technician", "electrician"), "multimeter", 8, 0, False, "cord_in_hand", "continuity",
          ("fine", "exchanged", "ground_open")),
     Test("bond_ohms", _ABOARD, "multimeter", 15, 0, False, "cord_out", "number", (), (), "neutral_ground_ohm", "ohm", "ohmmeter"),
-    Test("clamp_cord", ("instructed", "technician", "electrician"), "clamp", 4, 0, True, "as_found", "number", (), ("known_wiring",), "cord_sum_a", "mA", "clamp"),
-    Test("clamp_live", _ABOARD, "clamp", 12, 0, True, "as_found", "number", (), ("known_wiring",), "live_sum_a", "mA", "clamp"),
-    Test("clamp_ground", _ABOARD, "clamp", 10, 0, True, "as_found", "number", (), ("known_wiring",), "ground_a", "mA", "clamp"),
+    Test("clamp_cord", ("instructed", "technician", "electrician"), "clamp", 4, 0, True, "one_load", "number", (), ("known_wiring",), "cord_sum_a", "mA", "clamp"),
+    Test("clamp_live", _ABOARD, "clamp", 12, 0, True, "one_load", "number", (), ("known_wiring",), "live_sum_a", "mA", "clamp"),
+    Test("clamp_ground", _ABOARD, "clamp", 10, 0, True, "one_load", "number", (), ("known_wiring",), "ground_a", "mA", "clamp"),
     Test("insulation", _ABOARD, "insulation", 40, 0, False, "cord_joined", "number", (), (), "insulation_ohm", "Mohm", "insulation"),
 )
 

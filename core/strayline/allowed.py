@@ -1,0 +1,85 @@
+"""Which tests may be proposed to this person, here and now. These rules outrank every gain in information.
+
+A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because a plug would be left with live
+blades, or because it would energise again what has tripped: every time power goes on, something has been taken away first.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from strayline.catalogue.questions import UNKNOWN
+from strayline.catalogue.tests import ROLES, TEST, TOOLS, Test
+from strayline.likelihood import Evidence
+
+LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
+TRIPPED = ("trips", "one_trips", "any_trips")
+INVERTER_SHARE = 0.2  # below this an inverter aboard is not worth a test of its own
+
+# How much is energised in each context, from the bare outlet to the boat as it was found. The states on one rung hold the same
+# parts or parts of each other; a Y taken out and another pedestal are other arrangements, and stand on no rung.
+RUNGS = {
+    "pedestal_alone": 1, "cord_alone": 2, "main_off": 3, "branches_off": 4, "light_load": 5, "test_load": 5, "inverter_settled": 5, "one_load": 5,
+    "suspect_out": 6, "as_found": 7,
+}  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class Situation:
+    """What the rules look at: stated facts, hypotheses with their weights, and the tests answered in this epoch (id, value) in order."""
+
+    facts: Mapping[str, str]
+    evidence: Evidence
+    weights: Sequence[float]
+    reports: Sequence[tuple[str, str]]
+
+
+def refusal(test: Test, situation: Situation) -> str | None:
+    """Why a test may not be proposed: "role", "tool", "need", "unwatched", "tripped" or "live_blades"; None when it may."""
+    facts = situation.facts
+    role, tool = facts.get("role", UNKNOWN), facts.get("tools", UNKNOWN)
+    if (role if role in ROLES else ROLES[0]) not in test.roles:
+        return "role"
+    if TOOLS.index(test.tool) > (TOOLS.index(tool) if tool in TOOLS else 0):
+        return "tool"
+    if not all(_holds(need, situation) for need in test.needs):
+        return "need"
+    if not test.energises:
+        return None
+    if test.id != "test_button" and unwatched(facts, situation.reports):
+        return "unwatched"
+    if RUNGS.get(test.context, 0) >= lowest_tripped(situation.reports):
+        return "tripped"
+    if any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in situation.evidence.predicted):
+        return "live_blades"
+    return None
+
+
+def unwatched(facts: Mapping[str, str], reports: Sequence[tuple[str, str]]) -> bool:
+    """Whether the outlet is known to have no ground-fault device that works: power from it proves nothing and protects nobody."""
+    pressed = [value for test, value in reports if test == "test_button"]
+    return facts.get("pedestal_device") == "none" or pressed[-1:] == ["stays"]
+
+
+def lowest_tripped(reports: Sequence[tuple[str, str]]) -> int:
+    """The lowest rung that tripped. The boat as found did, or nobody would ask."""
+    rungs = [RUNGS[TEST[test].context] for test, value in reports if value in TRIPPED and TEST[test].context in RUNGS]
+    return min((*rungs, RUNGS["as_found"]))
+
+
+def _holds(need: str, situation: Situation) -> bool:
+    plug = situation.facts.get("plug", UNKNOWN)
+    if need == "pedestal_device":
+        return situation.facts.get("pedestal_device") in ("device_30", "class_a")
+    if need == "plain_cord":
+        return plug in ("one_cord", "one_cord_four_wire")
+    if need == "known_wiring":
+        return plug != "homemade"
+    if need == "y_in_use":
+        return plug == "combining_y"
+    if need == "inverter":
+        has = situation.evidence.having("inverter", "yes")
+        return math.fsum(weight for weight, yes in zip(situation.weights, has, strict=True) if yes) > INVERTER_SHARE
+    raise ValueError(f"no such need: {need}")
