@@ -6,7 +6,7 @@
  * @typedef {import("./render.js").Screen} Screen
  */
 import { Engine } from "../boot.js";
-import { before, gateHolds, newCase, placeOf, placesOf, request, stoppedBy, withAnswer, withChange, withGate } from "./flow.js";
+import { before, gateHolds, newCase, placeOf, placesOf, request, stoppedBy, touched, withAnswer, withChange, withGate } from "./flow.js";
 import { goOffline } from "./offline.js";
 import { drawFailure, drawScreen, drawWaiting } from "./render.js";
 import { addToSheet, faceHeading, onGate, openSheet, returnTo, stopSheet, word } from "./static.js";
@@ -85,11 +85,13 @@ async function open() {
 /** @type {Record<string, (button: HTMLElement) => unknown>} what the buttons do */
 const ACTS = {
   back: () => look(before(held, changing < 0 ? placeOf(held, latest?.form ?? null) : changing)),
-  keep: () => receive(latest),
+  keep: () => (latest ? receive(latest) : show()),
   change: (button) => look(placesOf(held, latest?.answered ?? [])[Number(button.dataset.line)] ?? -1),
   undo: () => {
     const previous = past.pop();
-    if (previous) return keep({ ...previous, changed: held.changed });
+    if (!previous) return;
+    passed = gateHolds(previous, new Date());
+    return keep(touched(previous, new Date()));
   },
   new: () => {
     latest = null;
@@ -110,6 +112,9 @@ function act(next) {
 
 /** The case is on the phone before the engine hears of it. @param {Case} next */
 async function keep(next) {
+  // At once, before anything is waited for: one question takes one tap.
+  flow.setAttribute("aria-busy", "true");
+  holdAnswers();
   held = next;
   changing = -1;
   await store.save(held);
@@ -142,8 +147,6 @@ async function show() {
   if (!held.answers.length) return faceHeading(inSight());
   asked += 1;
   const turn = asked;
-  flow.setAttribute("aria-busy", "true");
-  holdAnswers();
   const slow = setTimeout(() => !latest && draw(), WAIT_SHOWN_MS);
   try {
     const reply = await engine.ask(request(held, language));
@@ -157,12 +160,12 @@ async function show() {
   }
 }
 
-/** @param {Screen | null} screen */
+/** @param {Screen} screen */
 function receive(screen) {
   changing = -1;
   latest = screen;
   const sign = stoppedBy(held);
-  if (sign && screen) return addToSheet(stopSheet(sign), [...screen.lead, ...screen.cautions, ...screen.steps]);
+  if (sign) return addToSheet(stopSheet(sign), [...screen.lead, ...screen.cautions, ...screen.steps]);
   draw();
   if (atGate()) return;
   /** @type {HTMLElement | null} */
@@ -188,7 +191,8 @@ function draw() {
   trouble.hidden = true;
   flow.removeAttribute("aria-busy");
   const screen = shown();
-  flow.replaceChildren(screen ? drawScreen(screen, about(), changeable(screen)) : drawWaiting());
+  flow.replaceChildren(screen ? drawScreen(screen, changing >= 0, changeable(screen)) : drawWaiting());
+  drawCase();
   settle();
   mark();
 }
@@ -211,9 +215,12 @@ function shown() {
   return { ...ASKED_AGAIN, ...beside, title: old.asked.title, form: { ...old.asked.form, value: old.value } };
 }
 
-function about() {
-  const kept = store.kept ? word("answer_kept") : word("storage_failed");
-  return { title: held.title, kept, undo: past.length > 0, changing: changing >= 0 };
+/** What stands below gate and questions alike: which case it is, whether it is kept, and the way back out of a tap. */
+function drawCase() {
+  part("case").hidden = !held.answers.length && !past.length;
+  part("case-title").textContent = held.title;
+  part("kept").textContent = store.kept ? word("answer_kept") : word("storage_failed");
+  part("undo").hidden = !past.length;
 }
 
 /** @param {Screen} screen */

@@ -59,6 +59,11 @@ export function withGate(held, value, now) {
   return gate < 0 ? withEntry(kept, { question: "gate", subject: null, value }, now) : withChange(kept, gate, value, now);
 }
 
+/** The case as the one worked on last. @param {Case} held @param {Date} now @returns {Case} */
+export function touched(held, now) {
+  return { ...held, changed: utc(now) };
+}
+
 /**
  * The sign that stopped this case, or "" while nothing has.
  * @param {Case} held @returns {string}

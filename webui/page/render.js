@@ -18,18 +18,16 @@ const LIKELY = 4;
 
 /**
  * @param {Screen} screen
- * @param {{title: string, kept: string, undo: boolean, changing: boolean}} about the case, and whether an old answer is being changed
+ * @param {boolean} changing whether it asks an old question again
  * @param {boolean[]} changeable for each answered line, whether it can be changed
  * @returns {DocumentFragment}
  */
-export function drawScreen(screen, about, changeable) {
+export function drawScreen(screen, changing, changeable) {
   const part = copy("screen");
   Object.assign(first(part, "article").dataset, { kind: screen.kind, stop: screen.verdict?.stop ?? "" });
   say(part, "progress", screen.progress);
   say(part, "title", screen.title);
   say(part, "why", screen.why);
-  say(part, "case", about.title);
-  say(part, "kept", about.kept);
   for (const name of /** @type {const} */ (["lead", "cautions", "steps", "tonight", "assumed"])) list(part, name, screen[name]);
   fill(part, "facts", screen.facts.map(drawFact));
   fill(part, "form", screen.form ? [drawForm(screen.form, screen.title)] : []);
@@ -43,8 +41,7 @@ export function drawScreen(screen, about, changeable) {
   );
   // At the end what to do tonight comes before all else that is beside.
   if (screen.verdict && screen.tonight.length) first(part, ".verdict").after(first(part, ".advice"));
-  if (!about.undo) first(part, "[data-act=undo]").remove();
-  if (!about.changing) first(part, "[data-act=keep]").remove();
+  if (!changing) first(part, "[data-act=keep]").remove();
   return part;
 }
 
