@@ -66,6 +66,17 @@ def own_bytes(site: Path) -> dict[str, int]:
     return {name: len(gzip.compress((site / name).read_bytes(), 9)) for name in files(site) if name not in theirs}
 
 
+def write_service_worker(site: Path, identity: str) -> None:
+    """Write the service worker into `site`, with the list of every other file that is there by now, under build id `identity`."""
+    scripts = sorted((bootstrap.ROOT / "service_worker").glob("*.js"))
+    own = {"precache.js", *(path.name for path in scripts)}  # the browser itself keeps a service worker's scripts
+    rows = ((name, _hash((site / name).read_bytes()), (site / name).stat().st_size) for name in files(site) if name not in own)
+    listed = "".join(f"  {json.dumps(row)},\n" for row in rows)
+    for path in scripts:
+        _copy(path, site / path.name)
+    _write(site / "precache.js", f"export const BUILD = {json.dumps(identity)};\nexport const FILES = [\n{listed}];\n")
+
+
 def _fill(site: Path) -> None:
     modules = bootstrap.node_tools(HERE) / "node_modules"
     resolver = bootstrap.wheels(HERE / "resolver.lock", "3.14")
@@ -78,7 +89,7 @@ def _fill(site: Path) -> None:
     _write_pages(site, notices, "")
     identity = _hash("".join(f"{name} {_hash((site / name).read_bytes())}\n" for name in files(site)).encode())[:12]
     _write_pages(site, notices, identity)
-    _write_service_worker(site, identity)
+    write_service_worker(site, identity)
 
 
 def _copy_scripts(site: Path, modules: Path) -> None:
@@ -151,14 +162,6 @@ def _write_pages(site: Path, notices: str, identity: str) -> None:
         template = (HERE / name).read_text(encoding="utf-8")
         page = static_pages.render(template, sections, strayline.__version__, identity)
         _write(site / name, page.replace("<!-- build:head -->", head).replace("<!-- build:notices -->", notices))
-
-
-def _write_service_worker(site: Path, identity: str) -> None:
-    rows = ((name, _hash((site / name).read_bytes()), (site / name).stat().st_size) for name in files(site))
-    listed = "".join(f"  {json.dumps(row)},\n" for row in rows)
-    for path in sorted((bootstrap.ROOT / "service_worker").glob("*.js")):
-        _copy(path, site / path.name)
-    _write(site / "precache.js", f"export const BUILD = {json.dumps(identity)};\nexport const FILES = [\n{listed}];\n")
 
 
 def _node(pyodide: Path, step: str, *paths: Path | str) -> None:
