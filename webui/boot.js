@@ -38,10 +38,10 @@ export class Engine {
   /**
    * @param {object} [options]
    * @param {number} [options.timeoutMs] how long a boot may take: a first visit on a slow line fetches about 8 MB
-   * @param {number} [options.answerMs] how long one reply may take
+   * @param {number} [options.answerMs] how long one reply may take: a changed set-up is seconds here, many more on an old phone
    * @param {(state: EngineState) => void} [options.onState]
    */
-  constructor({ timeoutMs = 90_000, answerMs = 30_000, onState = () => {} } = {}) {
+  constructor({ timeoutMs = 90_000, answerMs = 60_000, onState = () => {} } = {}) {
     this.#bootMs = timeoutMs;
     this.#answerMs = answerMs;
     this.#onState = onState;

@@ -6,6 +6,7 @@ Each file bench_NAME.py here has `rows()`, which yields Row after Row.
 from __future__ import annotations
 
 import importlib
+import shutil
 import sys
 from pathlib import Path
 
@@ -16,6 +17,9 @@ for folder in ("core", "webui", "tests/browser"):
 
 def main(wanted: list[str]) -> int:
     """Run the named benchmarks, or all of them, and return the exit status."""
+    if not shutil.which("chromium"):
+        print("chromium is missing; install it (on Debian or Ubuntu: apt-get install chromium)", file=sys.stderr)
+        return 1
     names = sorted(path.stem.removeprefix("bench_") for path in HERE.glob("bench_*.py"))
     missed = 0
     print(f"{'':<62} {'measured':>12} {'must reach':>12}")

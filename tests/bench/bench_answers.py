@@ -112,7 +112,7 @@ def _answer(question: str, subject: str | None, value: str, seq: int) -> dict[st
 def _in_chromium(requests: list[dict[str, Any]]) -> list[float]:
     server = SiteServer(build.build())
     with tempfile.TemporaryDirectory() as name, sync_playwright() as playwright:
-        browser = Browser(playwright, shutil.which("chromium") or "chromium", Path(name))
+        browser = Browser(playwright, str(shutil.which("chromium")), Path(name))
         page = browser.open(service_workers="block")
         page.goto(server.address + "notices.html")  # a page of ours that starts no engine of its own
         times: list[float] = page.evaluate(ASK_ALL, requests)

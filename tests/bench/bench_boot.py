@@ -47,7 +47,9 @@ BARE_PAGE = """<!doctype html>
 """
 
 BARE_SCRIPT = """import { scriptURL } from "./trusted.js";
-navigator.serviceWorker.addEventListener("message", ({ data }) => { if (data.type === "ready") document.documentElement.className = "ready"; });
+navigator.serviceWorker.addEventListener("message", ({ data }) => {
+  if (data.type === "ready") document.documentElement.className = "ready";
+});
 navigator.serviceWorker.register(scriptURL("service_worker.js"), { type: "module" });
 """
 
@@ -71,7 +73,7 @@ def rows() -> Iterator[Row]:
         browsers = {}
         for folder in starts:
             server = SiteServer(folder)
-            browser = Browser(playwright, shutil.which("chromium") or "chromium", Path(name, f"profile {folder.name}"))
+            browser = Browser(playwright, str(shutil.which("chromium")), Path(name, f"profile {folder.name}"))
             page = browser.open()
             page.goto(server.address)
             page.locator("html.ready").wait_for()

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import base64
 import hashlib
 import http.client
+import importlib
 import json
 import re
 import subprocess
@@ -15,6 +17,7 @@ import pytest
 import bootstrap
 import build
 import build_notices
+import compile_zip
 
 ROOT = Path(__file__).resolve().parents[2]
 
@@ -39,6 +42,26 @@ def test_nothing_is_compiled_on_the_phone(site):
             assert all(name.endswith(".pyc") for name in modules)
             # PEP 552: bytes 4 to 8 of a .pyc are flags; 1 is "by hash", 2 would be "check the source".
             assert {int.from_bytes(opened.read(name)[4:8], "little") for name in modules} == {1}
+
+
+def test_compiling_a_wheel(tmp_path, monkeypatch):
+    """A compiled wheel imports without its sources, its RECORD holds for the new files, and the same wheel gives the same bytes."""
+    plain, made, again = (tmp_path / name for name in ("plain.whl", "made.whl", "again.whl"))
+    with zipfile.ZipFile(plain, "w") as archive:
+        archive.writestr("compiled_example.py", '"""Words."""\nANSWER = 6 * 7\n')
+        archive.writestr("compiled_example-1.dist-info/RECORD", "compiled_example.py,,\n")
+    for target in (made, again):
+        compile_zip.compile_zip(str(plain), str(target), "shown")
+    assert made.read_bytes() == again.read_bytes()
+    monkeypatch.syspath_prepend(str(made))
+    module = importlib.import_module("compiled_example")
+    assert (module.ANSWER, module.__doc__) == (42, None)
+    with zipfile.ZipFile(made) as archive:
+        body = archive.read("compiled_example.pyc")
+        # Python packaging's specification of RECORD: name, urlsafe base64 of the hash without padding, size.
+        digest = base64.urlsafe_b64encode(hashlib.sha256(body).digest()).decode().rstrip("=")
+        record = archive.read("compiled_example-1.dist-info/RECORD").decode()
+    assert f"compiled_example.pyc,sha256={digest},{len(body)}\n" in record
 
 
 def test_lock_names_our_wheel_alone(site):
