@@ -1,7 +1,8 @@
 """Which tests may be proposed to this person, here and now. These rules outrank every gain in information.
 
-A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because a plug would be left with live
-blades, or because it would energise again what has tripped: every time power goes on, something has been taken away first.
+A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because an end is burnt, because a plug
+would be left with live blades, or because it would energise again what has tripped: every time power goes on, something has been taken
+away first.
 """
 
 from __future__ import annotations
@@ -15,7 +16,7 @@ from strayline.catalogue.tests import ROLES, TEST, TOOLS, Test
 from strayline.likelihood import Evidence
 
 LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
-TRIPPED = ("trips", "one_trips", "any_trips")
+TRIPPED = ("trips", "any_trips")  # after "one_trips" that load stays off, and the rest may run without it
 INVERTER_SHARE = 0.2  # below this an inverter aboard is not worth a test of its own
 
 # How much is energised in each context, from the bare outlet to the boat as it was found. The states on one rung hold the same
@@ -28,16 +29,21 @@ RUNGS = {
 
 @dataclass(frozen=True, slots=True)
 class Situation:
-    """What the rules look at: stated facts, hypotheses with their weights, and the tests answered in this epoch (id, value) in order."""
+    """What the rules look at: stated facts, hypotheses with their weights, and what tests have shown.
+
+    reports -- the tests answered in this epoch (id, value) in order
+    last    -- the last answer to each test, also from before a fix: a dead device or a burnt end stays one until it is looked at again
+    """
 
     facts: Mapping[str, str]
     evidence: Evidence
     weights: Sequence[float]
     reports: Sequence[tuple[str, str]]
+    last: Mapping[str, str]
 
 
 def refusal(test: Test, situation: Situation) -> str | None:
-    """Why a test may not be proposed: "role", "tool", "need", "unwatched", "tripped" or "live_blades"; None when it may."""
+    """Why a test may not be proposed: "role", "tool", "need", "unwatched", "damaged", "tripped" or "live_blades"; None when it may."""
     facts = situation.facts
     role, tool = facts.get("role", UNKNOWN), facts.get("tools", UNKNOWN)
     if (role if role in ROLES else ROLES[0]) not in test.roles:
@@ -48,8 +54,10 @@ def refusal(test: Test, situation: Situation) -> str | None:
         return "need"
     if not test.energises:
         return None
-    if test.id != "test_button" and unwatched(facts, situation.reports):
+    if test.id != "test_button" and unwatched(facts, situation.last):
         return "unwatched"
+    if damaged(test, situation.last):
+        return "damaged"
     if RUNGS.get(test.context, 0) >= lowest_tripped(situation.reports):
         return "tripped"
     if any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in situation.evidence.predicted):
@@ -57,10 +65,15 @@ def refusal(test: Test, situation: Situation) -> str | None:
     return None
 
 
-def unwatched(facts: Mapping[str, str], reports: Sequence[tuple[str, str]]) -> bool:
+def unwatched(facts: Mapping[str, str], last: Mapping[str, str]) -> bool:
     """Whether the outlet is known to have no ground-fault device that works: power from it proves nothing and protects nobody."""
-    pressed = [value for test, value in reports if test == "test_button"]
-    return facts.get("pedestal_device") == "none" or pressed[-1:] == ["stays"]
+    return facts.get("pedestal_device") == "none" or last.get("test_button") == "stays"
+
+
+def damaged(test: Test, last: Mapping[str, str]) -> bool:
+    """Whether an end was seen burnt, which carries no current again, or wet, when the test would leave the cord's far end live and free."""
+    seen = last.get("look_over")
+    return seen == "burnt" or (seen == "wet" and test.context == "cord_alone")
 
 
 def lowest_tripped(reports: Sequence[tuple[str, str]]) -> int:
@@ -75,8 +88,8 @@ def _holds(need: str, situation: Situation) -> bool:
         return situation.facts.get("pedestal_device") in ("device_30", "class_a")
     if need == "plain_cord":
         return plug in ("one_cord", "one_cord_four_wire")
-    if need == "known_wiring":
-        return plug != "homemade"
+    if need == "usable_hook_up":
+        return plug not in ("homemade", "combining_y")  # nobody can vouch for the one; the other is taken out whole, and stays out
     if need == "y_in_use":
         return plug == "combining_y"
     if need == "inverter":

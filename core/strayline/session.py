@@ -241,7 +241,8 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     reports = [(answer.question, answer.value) for answer in ordered if answer.seq > epoch and answer.question in TEST]
     done = {test for test, _ in reports}
     looked = {answer.question for answer in ordered if answer.question in LOOKS}
-    situation = Situation(facts, evidence, weights, reports)
+    last = {answer.question: answer.value for answer in ordered if answer.question in TEST}
+    situation = Situation(facts, evidence, weights, reports, last)
     tests = [test for test in TESTS if test.id not in done and not refusal(test, situation)]
     candidates = [Candidate(test.id, test.minutes, outcomes) for test in tests if (outcomes := evidence.outcomes("test", test.id))]
     looks = [Candidate(look, FREE_MINUTES, outcomes) for look in LOOKS if look not in looked and (outcomes := evidence.outcomes("question", look))]
@@ -249,7 +250,7 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     session = Session(
         ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal, misfits=misfits,
         tests_done=physical, allowed=tuple(test.id for test in tests),
-        unwatched=unwatched(facts, reports),
+        unwatched=unwatched(facts, last),
     )  # fmt: skip
     if _dangerous(evidence, weights):
         return _with(session, verdict="danger")
