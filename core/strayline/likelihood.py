@@ -22,7 +22,7 @@ from strayline.predict import ROLES, Outlook, Point, Predictions, Watch, cause_w
 WRONG = 0.05  # share of answers that are wrong (method: assuming less costs far more than assuming this)
 WRONG_FACT = 0.03  # the same for a plain fact the person can see
 DEAD_SHARE = 0.03  # devices that no longer open
-UNEXPLAINED = 0.02  # how a state that cannot trip is weighed against a trip that did happen
+UNEXPLAINED = 0.1  # a state that trips less often than this hardly explains a trip that did happen
 SPREAD = 0.5  # natural-log spread of a predicted reading: the grid's half step and unit-to-unit differences
 CLAMP_OFFSET_A = 0.0008  # clamp meters: 5 % and 0.8 mA
 MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1

@@ -226,7 +226,7 @@ def _why(session: Session, speech: _Speech, cause: str, spoken: list[dict[str, f
     hypotheses = session.hypotheses
     assert hypotheses is not None
     place = hypotheses.causes.index(cause)
-    best = max(hypotheses.members[place], key=lambda index: (session.weights[index], -index))
+    best = max(hypotheses.members[place], key=lambda index: (float(f"{session.weights[index]:.9e}"), -index))  # last bits differ between builds
     where, number, _ = evidence.members[best]
     made = evidence.predicted[where].outlooks(contexts.AS_FOUND)
     numbers = []
