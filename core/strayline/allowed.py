@@ -77,10 +77,9 @@ def damaged(test: Test, last: Mapping[str, str]) -> bool:
 
 
 def lowest_tripped(reports: Sequence[tuple[str, str]]) -> int:
-    """The lowest rung that tripped. The boat as found did, or nobody would ask; only loads that each held alone are put together again."""
+    """The lowest rung that tripped. The boat as found did, or nobody would ask."""
     rungs = [RUNGS[TEST[test].context] for test, value in reports if value in TRIPPED and TEST[test].context in RUNGS]
-    as_found = RUNGS["as_found"]
-    return min((*rungs, as_found + 1 if ("one_at_a_time", "holds_all") in reports else as_found))
+    return min((*rungs, RUNGS["as_found"]))
 
 
 def _holds(need: str, situation: Situation) -> bool:
@@ -93,8 +92,6 @@ def _holds(need: str, situation: Situation) -> bool:
         return plug not in ("homemade", "combining_y")  # nobody can vouch for the one; the other is taken out whole, and stays out
     if need == "y_in_use":
         return plug == "combining_y"
-    if need == "each_held":
-        return ("one_at_a_time", "holds_all") in situation.reports
     if need == "inverter":
         has = situation.evidence.having("inverter", "yes")
         return math.fsum(weight for weight, yes in zip(situation.weights, has, strict=True) if yes) > INVERTER_SHARE

@@ -141,7 +141,7 @@ def _form(
 def _outcome(session: Session, speech: _Speech) -> Screen:
     assert session.marginal is not None and session.verdict is not None
     ranked = _ranked(session)
-    causes = {"group": list(session.group), "unknown": [], "danger": [ranked[0]]}.get(session.verdict, [ranked[0]])
+    causes = [] if session.verdict == "unknown" else list(session.group) or [ranked[0]]
     share = math.fsum(session.marginal[cause] for cause in causes)
     fields = {"percent": percent(share), "title": speech.say(f"cause.{ranked[0]}.title"), "count": str(len(causes))}
     lead = speech.lines(f"verdict.{session.verdict}.lead", **fields)

@@ -22,7 +22,7 @@ from strayline.causes import Shunt, own_parts
 from strayline.errors import CaseError, RequestError
 from strayline.installation import EARTH
 from strayline.likelihood import LIMITS, Evidence
-from strayline.next_test import NAMED, Candidate, choose, leading_group, stop, verification
+from strayline.next_test import NAMED, NOTHING_NOW, Candidate, choose, leading_group, stop, verification
 from strayline.parts import Installation, read
 from strayline.posterior import Hypotheses, cause_marginal, misfit, posterior
 from strayline.predict import HULL, Latent, predictions
@@ -258,7 +258,10 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     if why and facts.get("plug") == "homemade":
         return _with(session, verdict="danger")  # whatever it is, a hook-up that nobody can vouch for is not to be used
     if why:
-        return _with(session, verdict=why, group=leading_group(hypotheses, weights, candidates) if why == "group" else ())
+        group = leading_group(hypotheses, weights, candidates) if why == "group" else ()
+        if group[:1] == (NOTHING_NOW,):
+            why = NOTHING_NOW  # what cannot be told from it here is shown with it
+        return _with(session, verdict=why, group=group)
     leader = max(marginal, key=marginal.__getitem__)
     chosen = choose(hypotheses, weights, [*candidates, *looks], first="without_y")
     if marginal[leader] >= NAMED and chosen and chosen.id != "without_y":

@@ -42,7 +42,6 @@ POWERED: dict[str, frozenset[str]] = {
     "clamp_ground": _BOAT | {"any"},
     "light_load": _BOAT | {"any", "light"},
     "appliance_unplugged": _BOAT | {"any", "light", "heavy"},
-    "all_together": _BOAT | {"any", "light", "heavy", "suspect"},
     "without_y": frozenset({"post", "straight adapter"}),
     "other_pedestal": frozenset({"other post"}),
 }

@@ -58,7 +58,6 @@ TESTS: tuple[Test, ...] = (
     Test("without_y", _ALL, "none", 6, 0, True, "without_y", "trips", _TRIPS, ("y_in_use",)),
     Test("other_pedestal", _ALL, "none", 10, 0, True, "other_pedestal", "trips", _TRIPS, ("plain_cord",)),
     Test("light_load", _ALL, "none", 4, 15, True, "light_load", "trips", _TRIPS, ("usable_hook_up",)),
-    Test("all_together", _ALL, "none", 6, 30, True, "as_found", "trips", _TRIPS, ("usable_hook_up", "each_held")),
     Test("adapter_continuity", ("instructed", "technician", "electrician"), "multimeter", 8, 0, False, "cord_in_hand", "continuity",
          ("fine", "exchanged", "ground_open")),
     Test("bond_ohms", _ABOARD, "multimeter", 15, 0, False, "cord_out", "number", (), (), "neutral_ground_ohm", "ohm", "ohmmeter"),
