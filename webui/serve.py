@@ -7,7 +7,7 @@ import http.server
 import os
 import sys
 from functools import partial
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import policy
 
@@ -58,7 +58,7 @@ class _Server(http.server.ThreadingHTTPServer):
     # On Windows "reuse" would let two servers share one port, each getting some of the requests.
     allow_reuse_address = os.name != "nt"
 
-    def handle_error(self, request: object, client_address: object) -> None:
+    def handle_error(self, request: Any, client_address: Any) -> None:
         """A browser that closes a connection in the middle is no error of ours; the rest is printed as ever."""
         if not isinstance(sys.exception(), ConnectionError):
             super().handle_error(request, client_address)
