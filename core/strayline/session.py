@@ -128,6 +128,8 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
         where = {"test": question} if question in TEST else {"ask": (question, problem.answer.subject)}
         return Session(ordered, facts, problem, **where)  # type: ignore[arg-type]
     epoch, fixed = _epoch(ordered)
+    if "combining_y" in fixed and facts.get("plug") == "combining_y" and known is None:
+        facts |= {"plug": "straight_adapter"}  # the Y is out of use, and one plug stands in its place
     given = {answer.question for answer in ordered} if not fixed else {answer.question for answer in ordered} | {"opened", "when"}
     for question in QUESTIONS:
         if question.opening and question.id not in given and _applies(question.id, facts, installation):
