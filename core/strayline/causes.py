@@ -309,6 +309,7 @@ def severities(cause: str, installation: Installation, volts: float) -> tuple[Se
     """
     mine = own_parts(installation)
     of = {kind: [part for part in mine if part.kind == kind] for kind in ("load", "cord", "adapter", "inlet", "main", "panel", "receptacle")}
+    exchangeable = [part for part in (*of["adapter"], *of["cord"], *of["inlet"]) if _one_tail(part)]
     leak_ohms = [volts / milliamperes * 1e3 for milliamperes in (12, 45, 250)]
     faults: list[Fault] = []
     match cause:
@@ -336,8 +337,10 @@ def severities(cause: str, installation: Installation, volts: float) -> tuple[Se
             faults = [Fault(cause, at=part.id, ohms=ohms) for part in _biggest(of["load"])[:1] for ohms in (0.05, 0.5)]
         case "inverter_bond":
             faults = [Fault(cause, at=part.id, ohms=0.05, spontaneous=window) for part in of["panel"][:1] for window in (0.0, 1.0)]
-        case "ground_neutral_exchanged" | "line_ground_exchanged":
-            faults = [Fault(cause, at=part.id) for part in (*of["adapter"], *of["cord"], *of["inlet"])[:2] if _one_tail(part)]
+        case "ground_neutral_exchanged":
+            faults = [Fault(cause, at=part.id) for part in exchangeable[:2]]
+        case "line_ground_exchanged":
+            faults = [Fault(cause, at=part.id) for part in exchangeable[:1]]
         case "neutral_ahead_of_device":
             watched = [part for part in of["main"][:1] if part.values["device"] != "none"]
             loads = [load for load in of["load"] if load.text("across") == "L1-N" and main_of(installation, load) in watched]

@@ -62,7 +62,7 @@ class Outlook:
 
     residual_a  -- magnitude at each watch, A RMS
     loop_s      -- magnitude of the common-mode admittance of the loop through each watch's window, siemens
-    line_a      -- largest line current at each watch, A RMS
+    line_a      -- largest line current at each watch that has a breaker of a known rating, A RMS; else 0
     readings    -- named probes: amperes, ohms or volts
     """
 
@@ -147,7 +147,7 @@ def _outlooks(installation: Installation, points: tuple[Point, ...], context: st
         return None
     base_network = build(made)
     effects: dict[Fault, Effect] = {}
-    prepared: dict[Network, _Prepared] = {}
+    prepared: dict[Network, _Prepared] = {}  # by the network a rewiring leaves, and by what this context leaves of it: many end alike
     name = context.partition(":")[0]
     watched = () if name in contexts.DEAD else watches(made)
     found: list[Outlook] = []
@@ -157,7 +157,9 @@ def _outlooks(installation: Installation, points: tuple[Point, ...], context: st
             made_effect = effects[point.fault] = effect(made, base_network, point.fault)
         ready = prepared.get(made_effect.network)
         if ready is None:
-            ready = prepared[made_effect.network] = _Prepared(made, contexts.switched(context, made, made_effect.network), watched, name)
+            left = contexts.switched(context, made, made_effect.network)
+            ready = prepared.get(left) or _Prepared(made, left, watched, name)
+            prepared[left] = prepared[made_effect.network] = ready
         shunts = [shunt for shunt in made_effect.shunts if name not in shunt.absent_in]
         shunts += [shunt for latent in point.latents for shunt in latent.shunts if name not in shunt.absent_in]
         found.append(ready.outlook(shunts))
@@ -173,7 +175,9 @@ class _Prepared:
         self.watched = watched
         self.context = context
         present = {branch.id for branch in network.branches}
-        self.lines = [tuple(f"{watch.id}.{line}" for line in ("L1", "L2") if f"{watch.id}.{line}" in present) for watch in watched]
+        self.lines = [
+            tuple(f"{watch.id}.{line}" for line in ("L1", "L2") if watch.rated_a and f"{watch.id}.{line}" in present) for watch in watched
+        ]
         self.names: list[str] = []
         self.probes = [solve.probe_residual(self.factors, watch.id) for watch in watched]
         self.probes += [solve.probe_current(self.factors, [(line, 1)]) for lines in self.lines for line in lines]
