@@ -24,7 +24,7 @@ WRONG_FACT = 0.03  # the same for a plain fact the person can see
 DEAD_SHARE = 0.03  # devices that no longer open
 UNEXPLAINED = 0.1  # a state that trips less often than this hardly explains a trip that did happen
 SPREAD = 0.5  # natural-log spread of a predicted reading: the grid's half step and unit-to-unit differences
-CLAMP_OFFSET_A = 0.0008  # clamp meters: 5 % and 0.8 mA
+CLAMP_OFFSET_MA = 0.8  # clamp meters: 5 % and 0.8 mA; limits are taken as two spreads
 MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1
 LOOP_MATTERS_S = 1e-3  # a loop of more than 1000 ohm trips no grounded-neutral detector
 
@@ -39,7 +39,7 @@ EDGES: dict[str, tuple[float, ...]] = {
 }
 LIMITS: dict[str, tuple[float, float]] = {"mA": (0.0, 100000.0), "ohm": (0.0, 1e9), "Mohm": (0.0, 1e6)}
 PER_UNIT = {"mA": 1e3, "ohm": 1.0, "Mohm": 1e-6}
-FLOOR_READING = {"mA": 0.05, "ohm": 0.02, "Mohm": 1e-4}
+FLOOR_READING = {"mA": 0.5, "ohm": 0.02, "Mohm": 1e-4}  # what the instrument does not tell from zero
 
 
 DEAD, WORKS, DETECTS = 0, 1, 2
@@ -102,7 +102,7 @@ class Evidence:
         near: dict[float, float] = {}
         for expected in predicted:
             if expected not in near:
-                near[expected] = (1 - WRONG) * _mass(expected, value / 1.15, value * 1.15, test.unit) + WRONG * 0.04
+                near[expected] = (1 - WRONG) * _mass(expected, *_window(value, test.unit), test.unit) + WRONG * 0.04
         return tuple(near[expected] for expected in predicted)
 
     def reweighted(self, factors: tuple[tuple[str, float], ...]) -> Hypotheses:
@@ -326,9 +326,16 @@ def _predicted_readings(found: Evidence, test: Test) -> list[float]:
     return [min(max(value * PER_UNIT[test.unit], low), high) for value in found.readings(test.context, name)]
 
 
+def _window(value: float, unit: str) -> tuple[float, float]:
+    """The readings that count as the same: 15 % and the clamp's offset either way; below the first and above the last edge all are."""
+    half, edges = 0.15 * value + (CLAMP_OFFSET_MA / 2 if unit == "mA" else 0.0), EDGES[unit]
+    low, high = value - half, value + half
+    return (0.0 if value <= edges[0] else min(low, edges[-1])), (math.inf if value >= edges[-1] else max(high, edges[0]))
+
+
 def _mass(expected: float, low: float, high: float, unit: str) -> float:
     """Probability that a reading expected at `expected` falls between low and high (log-normal, wider near the meter's floor)."""
-    spread = math.hypot(SPREAD, CLAMP_OFFSET_A * 1e3 / expected if unit == "mA" else 0.1)
+    spread = math.hypot(SPREAD, CLAMP_OFFSET_MA / 2 / expected if unit == "mA" else 0.1)
 
     def below(value: float) -> float:
         return 0.5 * (1 + math.erf(math.log(value / expected) / (spread * math.sqrt(2)))) if value > 0 else 0.0
