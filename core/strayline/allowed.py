@@ -8,12 +8,16 @@ away first.
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from strayline.catalogue.questions import UNKNOWN
 from strayline.catalogue.tests import ROLES, TEST, TOOLS, Test
-from strayline.likelihood import Evidence
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping, Sequence
+
+    from strayline.likelihood import Evidence
 
 LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
 TRIPPED = ("trips", "any_trips")  # after "one_trips" that load stays off, and the rest may run without it
@@ -22,8 +26,8 @@ INVERTER_SHARE = 0.2  # below this an inverter aboard is not worth a test of its
 # How much is energised in each context, from the bare outlet to the boat as it was found. The states on one rung hold the same
 # parts or parts of each other; a Y taken out and another pedestal are other arrangements, and stand on no rung.
 RUNGS = {
-    "pedestal_alone": 1, "cord_alone": 2, "main_off": 3, "branches_off": 4, "light_load": 5, "test_load": 5, "inverter_settled": 5, "one_load": 5,
-    "suspect_out": 6, "as_found": 7,
+    "pedestal_alone": 1, "cord_alone": 2, "main_off": 3, "branches_off": 4, "light_load": 5, "test_load": 5, "inverter_settled": 5,
+    "one_load": 5, "suspect_out": 6, "as_found": 7,
 }  # fmt: skip
 
 

@@ -6,12 +6,16 @@ several part lists, each with its share.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from strayline.causes import own_parts
+from strayline.boat import own_parts
 from strayline.components import CONNECTORS
-from strayline.parts import Installation
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+    from strayline.parts import Installation
 
 UNKNOWN = "unknown"
 RawPart = dict[str, object]
@@ -90,31 +94,31 @@ def parts(arrangement: Arrangement, facts: Mapping[str, str], *, neighbour: bool
         return {"id": name, "kind": "receptacle", "from": pedestal, "connector": connector, "leg": leg, "device": pedestal_device}
 
     other_leg = "L1" if single else "L2"
+
+    def adapted(style: str, *outlets: str, tails: tuple[str, ...] = ("adapter",)) -> list[RawPart]:
+        return [{"id": "adapter", "kind": "adapter", "style": style, "from": list(outlets)}, *_cords(*tails)]
+
     wide = arrangement.plug in ("one_cord_four_wire", "combining_y", "straight_adapter")
-    plug = {
-        "one_cord": lambda: [receptacle("outlet", one_line), *_cords("outlet")],
-        "one_cord_four_wire": lambda: [receptacle("outlet", two_lines), *_cords("outlet")],
-        "two_cords": lambda: [receptacle("outlet", one_line), receptacle("outlet2", one_line, other_leg), *_cords("outlet", "outlet2")],
-        "combining_y": lambda: [
-            receptacle("outlet", one_line), receptacle("outlet2", one_line, other_leg),
-            {"id": "adapter", "kind": "adapter", "style": "combining_y", "from": ["outlet", "outlet2"]}, *_cords("adapter"),
-        ],
-        "splitting_y": lambda: [
-            receptacle("outlet", two_lines), {"id": "adapter", "kind": "adapter", "style": "splitting_y", "from": "outlet"},
-            *_cords("adapter.a", "adapter.b"),
-        ],
-        "straight_adapter": lambda: [
-            receptacle("outlet", one_line), {"id": "adapter", "kind": "adapter", "style": "straight_30_50", "from": "outlet"}, *_cords("adapter"),
-        ],
-        "homemade": lambda: [
-            receptacle("outlet", one_line), {"id": "adapter", "kind": "adapter", "style": "homemade", "from": "outlet"}, *_cords("adapter"),
-        ],
-    }[arrangement.plug]()  # fmt: skip
+    split = arrangement.plug == "splitting_y"
+    paired = arrangement.plug in ("two_cords", "combining_y")
+    outlets = [receptacle("outlet", two_lines if split or arrangement.plug == "one_cord_four_wire" else one_line)]
+    if paired:
+        outlets.append(receptacle("outlet2", one_line, other_leg))
+    cords: dict[str, list[RawPart]] = {
+        "one_cord": _cords("outlet"),
+        "one_cord_four_wire": _cords("outlet"),
+        "two_cords": _cords("outlet", "outlet2"),
+        "combining_y": adapted("combining_y", "outlet", "outlet2"),
+        "splitting_y": adapted("splitting_y", "outlet", tails=("adapter.a", "adapter.b")),
+        "straight_adapter": adapted("straight_30_50", "outlet"),
+        "homemade": adapted("homemade", "outlet"),
+    }
+    plug = [*outlets, *cords[arrangement.plug]]
     inlets = sum(part["kind"] == "inlet" for part in plug)
     boat = _two_panels(single, aboard_device) if inlets == 2 else _one_panel(single, wide, aboard_device)
     panels = ["panel", "panel2"][:inlets]
     hull: RawPart = {"id": "hull", "kind": "hull", "from": panels, "afloat": afloat}
-    spare = receptacle("spare", two_lines if wide or arrangement.plug == "splitting_y" else one_line, pedestal="post2")
+    spare = receptacle("spare", two_lines if wide or split else one_line, pedestal="post2")
     next_door = _neighbour(one_line, neighbour)
     return {"parts": [*dock, *plug, spare, *boat, hull, *next_door]}
 

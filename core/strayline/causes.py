@@ -1,4 +1,4 @@
-"""Each cause: what it changes in a Network, and the grid of severities the diagnosis sums over.
+"""Each cause: what it changes in a Network, in circuit terms.
 
 A cause is either a set of shunts (an impedance across two nodes, closed form over ports) or a rewiring of the network
 (exchange, open, a neutral landed elsewhere) with shunts on top. `effect` is the only place where a cause meets a circuit;
@@ -9,15 +9,19 @@ from __future__ import annotations
 
 import dataclasses
 import math
-from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
+from strayline.boat import own_parts, panel_of
 from strayline.catalogue.causes import CAUSE
-from strayline.components import CONNECTORS
 from strayline.errors import CaseError
-from strayline.installation import tap_node, zone_parts
+from strayline.installation import tap_node
 from strayline.network import Branch, Network, with_branches, without_branches
-from strayline.parts import Installation, Part, base
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Iterable
+
+    from strayline.parts import Installation, Part
 
 SAME_POSITION = 1e-9  # share of an element: closer cuts are one
 
@@ -53,6 +57,7 @@ class Shunt:
     absent_in: tuple[str, ...] = ()
 
     def branch(self) -> Branch:
+        """The shunt as a branch of a network."""
         return Branch(self.id, self.a, self.b, complex(self.ohms), self.kind, self.owner)
 
 
@@ -62,14 +67,6 @@ class Effect:
 
     network: Network
     shunts: tuple[Shunt, ...] = ()
-
-
-@dataclass(frozen=True, slots=True)
-class Severity:
-    """One point of a cause's grid with its share of the cause's prior."""
-
-    fault: Fault
-    weight: float
 
 
 def applied(installation: Installation, network: Network, faults: Iterable[Fault]) -> Network:
@@ -104,7 +101,7 @@ def _ohms(fault: Fault) -> float:
     return fault.ohms
 
 
-def _nothing(installation: Installation, network: Network, fault: Fault) -> Effect:
+def _nothing(_installation: Installation, network: Network, _fault: Fault) -> Effect:
     return Effect(network)
 
 
@@ -172,7 +169,9 @@ def _summed_filters(installation: Installation, network: Network, fault: Fault) 
     if not farads > 0:
         raise CaseError("nanofarads", "must be above zero nF", fault.nanofarads)
     ohms = -1j / (2 * math.pi * network.hertz * farads)
-    return Effect(network, tuple(Shunt(f"filter.{load.id}", f"{load.id}.in", f"{load.id}.frame", ohms, "filter", load.id) for load in loads))
+    return Effect(
+        network, tuple(Shunt(f"filter.{load.id}", f"{load.id}.in", f"{load.id}.frame", ohms, "filter", load.id) for load in loads)
+    )
 
 
 def _boat(installation: Installation, fault: Fault) -> tuple[Part, ...]:
@@ -204,7 +203,10 @@ def _exchanged(one: str, other: str) -> Callable[[Installation, Network, Fault],
 
     def exchange(installation: Installation, network: Network, fault: Fault) -> Effect:
         part = _part(installation, fault.at, "cord", "adapter", "inlet")
-        pairs = zip(*([branch for branch in network.branches if branch.owner == part.id and branch.kind == kind] for kind in (one, other)), strict=False)
+        pairs = zip(
+            *([branch for branch in network.branches if branch.owner == part.id and branch.kind == kind] for kind in (one, other)),
+            strict=False,
+        )
         swapped = {}
         for first, second in pairs:
             swapped[first.id] = dataclasses.replace(first, to_node=second.to_node)
@@ -229,7 +231,9 @@ def _neutral_ahead_of_device(installation: Installation, network: Network, fault
 def _open_ground_with_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
     part = _part(installation, fault.at, "cord", "adapter", "inlet", "receptacle")
     load = _part(installation, fault.load, "load", key="load")
-    opened = without_branches(network, [branch.id for branch in network.branches if branch.owner == part.id and branch.kind == "protective"])
+    opened = without_branches(
+        network, [branch.id for branch in network.branches if branch.owner == part.id and branch.kind == "protective"]
+    )
     return Effect(opened, (Shunt("leak", f"{load.id}.in", f"{load.id}.frame", _ohms(fault), "leak", load.id),))
 
 
@@ -271,114 +275,3 @@ _EFFECTS: dict[str, Callable[[Installation, Network, Fault], Effect]] = {
 }
 if set(_EFFECTS) != set(CAUSE):
     raise RuntimeError(f"causes without an effect or effects without a cause: {set(_EFFECTS) ^ set(CAUSE)}")
-
-
-# --- whose boat it is ----------------------------------------------------------------------------------------------
-
-
-def own_parts(installation: Installation, panel_id: str | None = None) -> tuple[Part, ...]:
-    """The parts of one boat and of what it is plugged into, receptacles included: of the stated panel's, else the first panel's."""
-    panels = installation.of_kind("panel")
-    if not panels:
-        return ()
-    panel = installation.part(panel_id) if panel_id else panels[0]
-    found = {panel.id}
-    for receptacle in installation.of_kind("receptacle"):
-        zone = zone_parts(installation, receptacle)
-        if panel.id in zone:
-            found |= zone
-    if len(found) == 1:  # nothing plugged in
-        found |= set(installation.downstream(panel.id))
-    return tuple(part for part in installation.parts if part.id in found)
-
-
-def panel_of(installation: Installation, load: Part) -> Part:
-    """The panel a load hangs on, through its breaker or directly."""
-    parent = installation.part(base(load.parents[0]))
-    return parent if parent.kind == "panel" else installation.part(base(parent.parents[0]))
-
-
-# --- severities ----------------------------------------------------------------------------------------------------
-
-
-def severities(cause: str, installation: Installation, volts: float) -> tuple[Severity, ...]:
-    """The deterministic grid of one cause in one installation; empty where the cause cannot be.
-
-    Ohms are spread geometrically around the values that make the usual operating currents (V / I), milliohms around
-    usual conductors.
-    """
-    mine = own_parts(installation)
-    of = {kind: [part for part in mine if part.kind == kind] for kind in ("load", "cord", "adapter", "inlet", "main", "panel", "receptacle")}
-    exchangeable = [part for part in (*of["adapter"], *of["cord"], *of["inlet"]) if _one_tail(part)]
-    leak_ohms = [volts / milliamperes * 1e3 for milliamperes in (12, 45, 250)]
-    faults: list[Fault] = []
-    match cause:
-        case "appliance_leak":
-            biggest = _biggest(of["load"])
-            faults = [
-                Fault(cause, at=load.id, ohms=ohms, position=position)
-                for load in biggest
-                for position in ((0.1, 0.5, 0.9) if load.flag("element") else (0.0,))
-                for ohms in leak_ohms
-            ]
-        case "wet_cord":
-            faults = [Fault(cause, at=part.id, ohms=ohms) for part in (*of["cord"], *of["adapter"])[:1] for ohms in leak_ohms]
-        case "wet_inlet":
-            faults = [Fault(cause, at=part.id, ohms=ohms) for part in of["inlet"][:1] for ohms in leak_ohms]
-        case "wet_pedestal":
-            pedestals = [installation.part(base(part.parents[0])) for part in of["receptacle"][:1]]
-            faults = [Fault(cause, at=part.id, ohms=ohms) for part in (*of["receptacle"][:1], *pedestals) for ohms in leak_ohms[1:]]
-        case "summed_filters":
-            hertz = 50.0 if volts > 200 else 60.0
-            faults = [Fault(cause, nanofarads=ma * 1e-3 / (2 * math.pi * hertz * volts) * 1e9) for ma in (10, 20, 34)] if of["load"] else []
-        case "panel_bond":
-            faults = [Fault(cause, at=part.id, ohms=ohms) for part in of["panel"][:1] for ohms in (0.02, 0.2, 2.0)]
-        case "frame_strap":
-            faults = [Fault(cause, at=part.id, ohms=ohms) for part in _biggest(of["load"])[:1] for ohms in (0.05, 0.5)]
-        case "inverter_bond":
-            faults = [Fault(cause, at=part.id, ohms=0.05, spontaneous=window) for part in of["panel"][:1] for window in (0.0, 1.0)]
-        case "ground_neutral_exchanged":
-            faults = [Fault(cause, at=part.id) for part in exchangeable[:2]]
-        case "line_ground_exchanged":
-            faults = [Fault(cause, at=part.id) for part in exchangeable[:1]]
-        case "neutral_ahead_of_device":
-            watched = [part for part in of["main"][:1] if part.values["device"] != "none"]
-            loads = [load for load in of["load"] if load.text("across") == "L1-N" and main_of(installation, load) in watched]
-            faults = [Fault(cause, at=part.id, load=load.id) for part in watched for load in loads[:2]]
-        case "open_ground_with_leak":
-            faults = [Fault(cause, at=part.id, load=load.id, ohms=ohms) for part in of["cord"][:1] for load in _biggest(of["load"])[:1] for ohms in leak_ohms[1:]]
-        case "feeder_accumulation":
-            fed = [part for part in of["receptacle"][:1] if installation.of_kind("feeder")]
-            faults = [Fault(cause, at=base(part.parents[0]), ohms=volts / ma * 1e3) for part in fed for ma in (75, 110, 160)]
-        case "touchy_device":
-            faults = [Fault(cause, at=part.id, scale=scale, spontaneous=often) for part in of["receptacle"][:1] for scale, often in ((0.3, 0.15), (0.1, 0.5), (0.02, 0.9))]
-        case "overload":
-            loads = [load for load in _biggest(of["load"]) if load.text("across") == "L1-N"][:1]
-            rated = _rated_a(of["receptacle"])
-            faults = [Fault(cause, at=load.id, ohms=volts / (rated * more)) for load in loads for more in (0.2, 0.5, 0.9)]
-        case "nothing_now":
-            faults = [Fault(cause)]
-        case "combining_y":
-            faults = [Fault(cause) for part in of["adapter"] if len(part.parents) == 2]
-        case "joined_inlets":
-            faults = [Fault(cause)] if len(of["inlet"]) == 2 else []
-    return tuple(Severity(fault, 1.0 / len(faults)) for fault in faults)
-
-
-def _one_tail(part: Part) -> bool:
-    return len(part.parents) == 1 and part.values.get("style") != "splitting_y"
-
-
-def _biggest(loads: list[Part]) -> list[Part]:
-    """The loads where leaks live: elements first, then motors and chargers, three at most."""
-    return sorted(loads, key=lambda load: (not load.flag("element"), loads.index(load)))[:2]
-
-
-def main_of(installation: Installation, load: Part) -> Part:
-    """The boat main a load hangs behind (its panel's first)."""
-    return installation.part(base(panel_of(installation, load).parents[0]))
-
-
-def _rated_a(receptacles: list[Part]) -> float:
-    return next((CONNECTORS[part.text("connector")].rated_a for part in receptacles), 30.0)
-

@@ -3,18 +3,22 @@
 from __future__ import annotations
 
 import argparse
+import dataclasses
 import json
 import sys
-from collections.abc import Callable, Sequence
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from strayline import __version__, casefile, report
-from strayline.casefile import Case
 from strayline.errors import CaseError, StraylineError
 from strayline.netlist import netlist
 from strayline.protocol import PROTOCOL, handle
 from strayline.residuals import residuals, stated_network
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Sequence
+
+    from strayline.casefile import Case
 
 BAD_FILE = 2
 
@@ -39,9 +43,7 @@ def _netlist(arguments: argparse.Namespace) -> None:
 
 
 def _request(case: Case | None) -> str:
-    answers = [] if case is None else [
-        {"question": answer.question, "subject": answer.subject, "value": answer.value, "seq": answer.seq, "at": answer.at} for answer in case.answers
-    ]  # fmt: skip
+    answers = [] if case is None else [dataclasses.asdict(answer) for answer in case.answers]
     return json.dumps({"id": "cli", "protocol": PROTOCOL, "language": "en", "units": "si", "view": "flow", "answers": answers})
 
 

@@ -7,7 +7,7 @@ test leaves behind, every unmated male blade; the caller vetoes what would be li
 
 from __future__ import annotations
 
-from strayline.causes import own_parts
+from strayline.boat import own_parts
 from strayline.components import SYSTEMS
 from strayline.installation import build, opened_by_breaker, opened_by_main
 from strayline.network import Branch, Network, with_branches, without_branches
@@ -130,6 +130,7 @@ def _opened(network: Network, branch_ids: set[str]) -> Network:
 
 
 def running_below(installation: Installation, breaker: Part, running: set[str]) -> bool:
+    """Whether a breaker feeds one of the running loads."""
     return any(child.id in running for child in installation.children(breaker.id))
 
 
@@ -137,7 +138,9 @@ def _with_test_load(network: Network, installation: Installation, mine: tuple[Pa
     """One plain resistive load, line to neutral, on the panel's first line."""
     panel = next(part.id for part in mine if part.kind == "panel")
     volts = SYSTEMS[installation.of_kind("supply")[0].text("system")].volts
-    return with_branches(network, Branch("test_load", f"{panel}.L1", f"{panel}.N", complex(volts**2 / TEST_LOAD_WATTS), "load", "test_load"))
+    return with_branches(
+        network, Branch("test_load", f"{panel}.L1", f"{panel}.N", complex(volts**2 / TEST_LOAD_WATTS), "load", "test_load")
+    )
 
 
 def _dead(name: str, network: Network, installation: Installation, mine: tuple[Part, ...]) -> Network:

@@ -6,16 +6,20 @@ hangs on. A plug that hangs on nothing (`from = ""`) has bare blades, named `<pa
 
 from __future__ import annotations
 
-import cmath
+import itertools
 import math
-from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
-from strayline.components import ASHORE, CONNECTORS, SYSTEMS
+from strayline.components import ASHORE, CONNECTORS, SYSTEMS, System
 from strayline.errors import CaseError
 from strayline.network import Blade, Branch, Network, Sensor, checked
 from strayline.parts import Installation, Part, base
+from strayline.phasor import polar
 from strayline.units import awg_area_mm2, copper_ohms
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Mapping
 
 EARTH = "earth"
 ELEMENT_TAPS = (0.1, 0.5, 0.9)  # positions along a heating element, as a share of its length from the line end
@@ -28,10 +32,20 @@ Conductors = dict[str, str]  # conductor name -> node
 class _Wiring:
     """What has been wired so far: branches, and the load-end nodes of every part (and of each tail)."""
 
-    system: str
+    installation: Installation
     branches: list[Branch] = field(default_factory=list)
     ends: dict[str, Conductors] = field(default_factory=dict)
     blades: list[Blade] = field(default_factory=list)
+
+    @property
+    def supply(self) -> Part:
+        """The one supply."""
+        return self.installation.of_kind("supply")[0]
+
+    @property
+    def system(self) -> System:
+        """Its volts, hertz and lines."""
+        return SYSTEMS[self.supply.text("system")]
 
     def add(self, branch_id: str, start: str, end: str, ohms: complex, kind: str, owner: str, emf: complex = 0j) -> None:
         self.branches.append(Branch(branch_id, start, end, complex(ohms), kind, owner, emf))
@@ -39,16 +53,14 @@ class _Wiring:
 
 def build(installation: Installation) -> Network:
     """The healthy Network of an installation: one branch per conductor and part, one sensor per device position."""
-    supply = installation.of_kind("supply")[0]
-    wiring = _Wiring(supply.text("system"))
+    wiring = _Wiring(installation)
     for part in installation.parts:
-        _BUILDERS[part.kind](part, installation, wiring)
+        _BUILDERS[part.kind](part, wiring)
     present = {branch.id for branch in wiring.branches}
     nodes = {node for branch in wiring.branches for node in (branch.from_node, branch.to_node)}
     sensors = tuple(_sensor(part, installation, present, nodes) for part in installation.of_kind("feeder", "receptacle", "main"))
     hulls = tuple((part.id, f"{part.id}.metal") for part in installation.of_kind("hull"))
-    hertz = SYSTEMS[wiring.system].hertz
-    return checked(Network(hertz, EARTH, tuple(wiring.branches), sensors, tuple(wiring.blades), hulls))
+    return checked(Network(wiring.system.hertz, EARTH, tuple(wiring.branches), sensors, tuple(wiring.blades), hulls))
 
 
 def _sensor(part: Part, installation: Installation, present: set[str], nodes: set[str]) -> Sensor:
@@ -109,14 +121,14 @@ def _role(conductor: str) -> str:
 _BRANCH_KIND = {"line": "line", "neutral": "neutral", "ground": "protective"}
 
 
-def _supply(part: Part, installation: Installation, wiring: _Wiring) -> None:
-    system = SYSTEMS[part.text("system")]
+def _supply(part: Part, wiring: _Wiring) -> None:
+    system = wiring.system
     volts = part.number("volts") or system.volts
     star = f"{part.id}.star"
     ends: Conductors = {}
     for line, degrees in system.lines.items():
         ends[line] = f"{part.id}.{line}"
-        wiring.add(f"{part.id}.{line}", star, ends[line], part.number("line_ohms") or 0, "source", part.id, cmath.rect(volts, math.radians(degrees)))
+        wiring.add(f"{part.id}.{line}", star, ends[line], part.number("line_ohms") or 0, "source", part.id, polar(volts, degrees))
     ends["N"], ends["G"] = f"{part.id}.N", f"{part.id}.G"
     wiring.add(f"{part.id}.N", star, ends["N"], part.number("neutral_ohms") or 0, "neutral", part.id)
     wiring.add(f"{part.id}.bond", ends["N"], ends["G"], part.number("bond_ohms") or 0, "bond", part.id)
@@ -134,19 +146,19 @@ def _through(part: Part, source: Conductors, wiring: _Wiring, ohms: Mapping[str,
     wiring.ends[part.id] = ends
 
 
-def _source(part: Part, number: int, installation: Installation, wiring: _Wiring) -> Conductors:
+def _source(part: Part, number: int, wiring: _Wiring) -> Conductors:
     """The conductors a part hangs on, or the bare blades of its loose plug."""
     parent = part.parents[number]
     if parent:
         return wiring.ends[parent]
     tail = "plug" if len(part.parents) == 1 else f"plug_{'ab'[number]}"
-    conductors = ("L1", "L2", "N", "G") if _carries_two_lines(part, number, installation) else ("L1", "N", "G")
+    conductors = ("L1", "L2", "N", "G") if _carries_two_lines(part, wiring.installation) else ("L1", "N", "G")
     blades = {conductor: f"{part.id}.{tail}.{conductor}" for conductor in conductors}
     wiring.blades += [Blade(node, node) for node in blades.values()]
     return blades
 
 
-def _carries_two_lines(part: Part, number: int, installation: Installation) -> bool:
+def _carries_two_lines(part: Part, installation: Installation) -> bool:
     """Whether a loose plug has two line blades: what hangs on it needs the second line and it is no combining Y tail."""
     if part.kind == "adapter":
         return part.text("style") in ("splitting_y", "straight_50_30")
@@ -157,23 +169,23 @@ def _carries_two_lines(part: Part, number: int, installation: Installation) -> b
     return not styles and any("L2" in load.text("across") for load in below if load.kind == "load")
 
 
-def _feeder(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _feeder(part: Part, wiring: _Wiring) -> None:
     _through(part, wiring.ends[part.parents[0]], wiring, _wire_ohms(part))
 
 
-def _cord(part: Part, installation: Installation, wiring: _Wiring) -> None:
-    _through(part, _source(part, 0, installation, wiring), wiring, _wire_ohms(part))
+def _cord(part: Part, wiring: _Wiring) -> None:
+    _through(part, _source(part, 0, wiring), wiring, _wire_ohms(part))
 
 
-def _pedestal(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _pedestal(part: Part, wiring: _Wiring) -> None:
     _through(part, wiring.ends[part.parents[0]], wiring, _short_ohms(part))
 
 
-def _inlet(part: Part, installation: Installation, wiring: _Wiring) -> None:
-    _through(part, _source(part, 0, installation, wiring), wiring, _short_ohms(part))
+def _inlet(part: Part, wiring: _Wiring) -> None:
+    _through(part, _source(part, 0, wiring), wiring, _short_ohms(part))
 
 
-def _receptacle(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _receptacle(part: Part, wiring: _Wiring) -> None:
     connector = CONNECTORS[part.text("connector")]
     shore = wiring.ends[part.parents[0]]
     lines = {"L1": shore[part.text("leg")]} if connector.lines == 1 else {"L1": shore["L1"], "L2": shore["L2"]}
@@ -183,8 +195,8 @@ def _receptacle(part: Part, installation: Installation, wiring: _Wiring) -> None
         wiring.branches = [branch for branch in wiring.branches if branch.id not in opened]
 
 
-def _adapter(part: Part, installation: Installation, wiring: _Wiring) -> None:
-    sources = [_source(part, number, installation, wiring) for number in range(len(part.parents))]
+def _adapter(part: Part, wiring: _Wiring) -> None:
+    sources = [_source(part, number, wiring) for number in range(len(part.parents))]
     ohms = _short_ohms(part)
     style = part.text("style")
     if len(sources) == 2:
@@ -212,7 +224,7 @@ def _adapter(part: Part, installation: Installation, wiring: _Wiring) -> None:
         _through(part, source, wiring, ohms)
 
 
-def _main(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _main(part: Part, wiring: _Wiring) -> None:
     _through(part, wiring.ends[part.parents[0]], wiring, _short_ohms(part))
     if not part.flag("closed"):
         opened = opened_by_main(part)
@@ -225,7 +237,7 @@ def opened_by_main(part: Part) -> frozenset[str]:
     return frozenset(lines | {f"{part.id}.N"} if part.number("poles") == 2 else lines)
 
 
-def _panel(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _panel(part: Part, wiring: _Wiring) -> None:
     sources = [wiring.ends[parent] for parent in part.parents]
     ohms = _short_ohms(part)
     if len(sources) == 1:
@@ -245,16 +257,16 @@ def _fed(part: Part, installation: Installation) -> list[str]:
     return [conductor for conductor in ("L1", "L2", "N") if conductor in wanted]
 
 
-def _breaker(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _breaker(part: Part, wiring: _Wiring) -> None:
     source = wiring.ends[part.parents[0]]
-    fed = _fed(part, installation)
+    fed = _fed(part, wiring.installation)
     for conductor in fed:
         if conductor not in source:
-            raise CaseError(f"{installation.paths[part.id]}.from", f"this panel has no {conductor}", part.parents[0])
+            raise CaseError(f"{wiring.installation.paths[part.id]}.from", f"this panel has no {conductor}", part.parents[0])
     _through(part, source, wiring, _short_ohms(part), fed)
     wiring.ends[part.id]["G"] = source["G"]
     if not part.flag("closed"):
-        opened = opened_by_breaker(part, installation)
+        opened = opened_by_breaker(part, wiring.installation)
         wiring.branches = [branch for branch in wiring.branches if branch.id not in opened]
 
 
@@ -264,7 +276,7 @@ def opened_by_breaker(part: Part, installation: Installation) -> frozenset[str]:
     return frozenset(f"{part.id}.{conductor}" for conductor in (fed if part.number("poles") == 2 else fed[:1]))
 
 
-def load_ohms(part: Part, volts: float, hertz: float) -> complex:
+def load_ohms(part: Part, volts: float) -> complex:
     """Impedance of a load from ohms, watts or amperes at the nominal voltage across it; an inductive power factor lags."""
     power_factor = part.number("power_factor") or 1.0
     if part.values["ohms"] is not None:
@@ -276,25 +288,24 @@ def load_ohms(part: Part, volts: float, hertz: float) -> complex:
     return size * complex(power_factor, math.sqrt(1 - power_factor**2))
 
 
-def _load(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _load(part: Part, wiring: _Wiring) -> None:
     source = wiring.ends[part.parents[0]]
     first, second = part.text("across").split("-")
     for conductor in (first, second):
         if conductor not in source:
-            raise CaseError(f"{installation.paths[part.id]}.across", f"nothing brings {conductor} to it", part.text("across"))
-    system = SYSTEMS[wiring.system]
-    supply = installation.of_kind("supply")[0]
-    phase = supply.number("volts") or system.volts
-    volts = phase if second == "N" else abs(cmath.rect(phase, math.radians(system.lines["L1"])) - cmath.rect(phase, math.radians(system.lines["L2"])))
+            raise CaseError(f"{wiring.installation.paths[part.id]}.across", f"nothing brings {conductor} to it", part.text("across"))
+    system = wiring.system
+    phase = wiring.supply.number("volts") or system.volts
+    volts = phase * abs(polar(1, system.lines["L1"]) - (0 if second == "N" else polar(1, system.lines["L2"])))
     near, frame = f"{part.id}.in", f"{part.id}.frame"
     wiring.add(f"{part.id}.G", frame, source["G"], part.number("ground_ohms") or SWITCH_OHMS, "protective", part.id)
     if part.flag("on"):
         wiring.add(f"{part.id}.switch", source[first], near, SWITCH_OHMS, "line", part.id)
-    ohms = load_ohms(part, volts, system.hertz)
+    ohms = load_ohms(part, volts)
     if part.flag("element"):
         cuts = (0.0, *ELEMENT_TAPS, 1.0)
         nodes = (near, *(tap_node(part.id, tap) for tap in ELEMENT_TAPS), source[second])
-        for number, (start, end) in enumerate(zip(nodes, nodes[1:], strict=False)):
+        for number, (start, end) in enumerate(itertools.pairwise(nodes)):
             wiring.add(f"{part.id}.element{number}", start, end, ohms * (cuts[number + 1] - cuts[number]), "load", part.id)
     else:
         wiring.add(f"{part.id}.load", near, source[second], ohms, "load", part.id)
@@ -311,7 +322,7 @@ def tap_node(part_id: str, position: float) -> str:
     return f"{part_id}.tap{position!r}"
 
 
-def _hull(part: Part, installation: Installation, wiring: _Wiring) -> None:
+def _hull(part: Part, wiring: _Wiring) -> None:
     metal = f"{part.id}.metal"
     for number, parent in enumerate(part.parents):
         branch_id = f"{part.id}.bond" if number == 0 else f"{part.id}.bond{number + 1}"

@@ -9,24 +9,28 @@ from __future__ import annotations
 
 import itertools
 import math
-from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
 from strayline import contexts, devices
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import QUESTION
 from strayline.catalogue.tests import STATED, TEST, Test
+from strayline.openings import DEAD, WORKS, DeviceState, any_opens, device_states, role_chances
 from strayline.posterior import Hypotheses, hypotheses_of
-from strayline.predict import ROLES, Outlook, Point, Predictions, Watch, cause_weights
+from strayline.predict import Outlook, Point, Predictions, cause_weights
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping, Sequence
+
+    from strayline.openings import RoleChances
+    from strayline.predict import Watch
 
 WRONG = 0.05  # share of answers that are wrong (method: assuming less costs far more than assuming this)
 WRONG_FACT = 0.03  # the same for a plain fact the person can see
-DEAD_SHARE = 0.03  # devices that no longer open
 UNEXPLAINED = 0.1  # a state that trips less often than this hardly explains a trip that did happen
 SPREAD = 0.5  # natural-log spread of a predicted reading: the grid's half step and unit-to-unit differences
 CLAMP_OFFSET_MA = 0.8  # clamp meters: 5 % and 0.8 mA; limits are taken as two spreads
-MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1
-LOOP_MATTERS_S = 1e-3  # a loop of more than 1000 ohm trips no grounded-neutral detector
 
 # What a person answers when a latent has this value, where it is not the value itself: a boat next door may be quiet.
 LOOKS_LIKE = {"running": {"yes": 1.0}, "quiet": {"yes": 0.4, "no": 0.6}}
@@ -40,39 +44,6 @@ EDGES: dict[str, tuple[float, ...]] = {
 LIMITS: dict[str, tuple[float, float]] = {"mA": (0.0, 100000.0), "ohm": (0.0, 1e9), "Mohm": (0.0, 1e6)}
 PER_UNIT = {"mA": 1e3, "ohm": 1.0, "Mohm": 1e-6}
 FLOOR_READING = {"mA": 0.5, "ohm": 0.02, "Mohm": 1e-4}  # what the instrument does not tell from zero
-
-
-DEAD, WORKS, DETECTS = 0, 1, 2
-
-
-@dataclass(frozen=True, slots=True)
-class DeviceState:
-    """What the pedestal's and the boat's devices are (DEAD or absent, WORKS, or also DETECTS a grounded neutral); `share` of the prior."""
-
-    pedestal: int
-    aboard: int
-    share: float
-
-
-ABSENT = {"pedestal": 0.15, "aboard": 0.5}  # share of docks and boats without a device where nobody says
-
-
-def device_states(watched: Sequence[Watch], facts: Mapping[str, str]) -> tuple[DeviceState, ...]:
-    """Every state of the devices in this installation, with its share; shares sum to one."""
-    kinds = {watch.role: watch.device for watch in watched}
-    shares = {}
-    for role in ("pedestal", "aboard"):
-        device = devices.DEVICES[kinds.get(role, "none")]
-        unknown = facts.get(f"{role}_device", "unknown") == "unknown"
-        missing = 1.0 if device.id == "none" else ABSENT[role] if unknown else DEAD_SHARE
-        works = 1 - missing
-        shares[role] = {DEAD: missing, WORKS: works * (1 - device.grounded_neutral), DETECTS: works * device.grounded_neutral}
-    return tuple(
-        DeviceState(pedestal, aboard, one * other)
-        for pedestal, one in shares["pedestal"].items()
-        for aboard, other in shares["aboard"].items()
-        if one * other > 0
-    )
 
 
 @dataclass(slots=True)
@@ -119,7 +90,8 @@ class Evidence:
         key = (name, value)
         if key not in self._latents:
             self._latents[key] = tuple(
-                any(latent.name == name and latent.value == value for latent in self.point(index).latents) for index in range(len(self.members))
+                any(latent.name == name and latent.value == value for latent in self.point(index).latents)
+                for index in range(len(self.members))
             )
         return self._latents[key]
 
@@ -133,7 +105,50 @@ class Evidence:
             self._readings[key] = tuple(_highest(self, context, name))
         return self._readings[key]
 
+    def openings(self, where: int, context: str) -> list[tuple[float, float, float]] | None:
+        """For every hypothesis of one installation the probabilities that feeder, pedestal and aboard devices open in a context."""
+        key = (where, context)
+        if key not in self._openings:
+            made = self.predicted[where].outlooks(context)
+            self._openings[key] = None if made is None else self._opened(where, context, *made)
+        return self._openings[key]
+
+    def _opened(
+        self, where: int, context: str, watched: tuple[Watch, ...], outlooks: Sequence[Outlook]
+    ) -> list[tuple[float, float, float]]:
+        seen: dict[tuple[int, bool], RoleChances] = {}
+        rows = []
+        for outlook, point in zip(outlooks, self.predicted[where].points, strict=True):
+            mark = (id(outlook), point.cause == "touchy_device")
+            if mark[1] or mark not in seen:
+                seen[mark] = role_chances(watched, outlook, point, context)
+            feeder, pedestal, aboard = seen[mark]
+            rows += [(feeder[WORKS], pedestal[state.pedestal], aboard[state.aboard]) for state in self.states[where]]
+        return rows
+
+    def opening(self, context: str) -> list[tuple[float, float, float]] | None:
+        """The same for the hypotheses of all installations; None where the context cannot be made."""
+        parts = [self.openings(where, context) for where in range(len(self.predicted))]
+        return None if any(part is None for part in parts) else [row for part in parts for row in part or ()]
+
+    def trips(self, context: str) -> list[float] | None:
+        """For every hypothesis the probability that anything opens in a context."""
+        rows = self.opening(context)
+        return None if rows is None else any_opens(rows)
+
+    def one_load_trips(self) -> list[tuple[float, float]] | None:
+        """For every hypothesis the least and greatest probability of a trip over the own loads, each running alone."""
+        rows: list[tuple[float, float]] = []
+        for where, one in enumerate(self.predicted):
+            states = [self.openings(where, context) for context in contexts.expand("one_load", one.installation)]
+            columns = [any_opens(part) for part in states if part is not None]
+            if not columns:
+                return None
+            rows += [(min(column), max(column)) for column in zip(*columns, strict=True)]
+        return rows
+
     def point(self, index: int) -> Point:
+        """The point of a hypothesis."""
         where, point, _ = self.members[index]
         return self.predicted[where].points[point]
 
@@ -157,97 +172,6 @@ def evidence(predicted: Sequence[tuple[Predictions, float]], facts: Mapping[str,
     return Evidence(tuple(one for one, _ in predicted), hypotheses_of(names, weights), tuple(members), tuple(states_of))
 
 
-# --- what devices do -----------------------------------------------------------------------------------------------
-
-# Per role the probability of opening when the device is dead, when it works, and when it also detects a grounded neutral.
-RoleChances = tuple[tuple[float, float, float], tuple[float, float, float], tuple[float, float, float]]
-
-
-def _role_chances(watched: tuple[Watch, ...], outlook: Outlook, point: Point, context: str) -> RoleChances:
-    """What feeder, pedestal and aboard devices do with one outlook, each dead, plain and detecting."""
-    minutes = MINUTES_HELD.get(context.partition(":")[0], 1.0)
-    held = {role: [1.0, 1.0, 1.0] for role in ROLES}
-    for place, watch in enumerate(watched):
-        row = held[watch.role]
-        residual, loop = outlook.residual_a[place], outlook.loop_s[place]
-        touchy = point.fault.cause == "touchy_device" and point.fault.at == watch.id
-        if touchy:
-            residual /= point.fault.scale
-        calm = 1 - point.fault.spontaneous if touchy else 1.0
-        device, band = devices.DEVICES[watch.device], (watch.non_operating_ma, watch.operating_ma)
-        plain = _trip(device, residual, 0.0, band)
-        row[0] *= 1 - devices.FLOOR
-        row[1] *= (1 - plain) * calm
-        row[2] *= (1 - (_trip(device, residual, loop, band) if loop > LOOP_MATTERS_S else plain)) * calm
-        if watch.rated_a:
-            cool = 1 - devices.overcurrent_probability(watch.rated_a, outlook.line_a[place], minutes)
-            held[watch.role] = [value * cool for value in row]
-    return tuple((1 - row[0], 1 - row[1], 1 - row[2]) for row in (held[role] for role in ROLES))  # type: ignore[return-value]
-
-
-def _trip(device: devices.Device, residual_a: float, loop_s: float, band: tuple[float | None, float | None]) -> float:
-    return devices.trip_probability(
-        device, residual_a, window_siemens=loop_s, grounded_neutral=loop_s > 0, non_operating_ma=band[0], operating_ma=band[1]
-    )
-
-
-def _openings(found: Evidence, where: int, context: str) -> list[tuple[float, float, float]] | None:
-    """For every hypothesis of one installation the probabilities that feeder, pedestal and aboard devices open in a context."""
-    key = (where, context)
-    if key not in found._openings:
-        made = found.predicted[where].outlooks(context)
-        if made is None:
-            found._openings[key] = None
-        else:
-            watched, outlooks = made
-            seen: dict[tuple[int, bool], RoleChances] = {}
-            rows = []
-            for outlook, point in zip(outlooks, found.predicted[where].points, strict=True):
-                mark = (id(outlook), point.cause == "touchy_device")
-                if mark[1] or mark not in seen:
-                    seen[mark] = _role_chances(watched, outlook, point, context)
-                feeder, pedestal, aboard = seen[mark]
-                rows += [(feeder[1], pedestal[state.pedestal], aboard[state.aboard]) for state in found.states[where]]
-            found._openings[key] = rows
-    return found._openings[key]
-
-
-def opening(found: Evidence, context: str) -> list[tuple[float, float, float]] | None:
-    """For every hypothesis the probabilities that feeder, pedestal and aboard devices open; None where the context cannot be made."""
-    rows: list[tuple[float, float, float]] = []
-    for where in range(len(found.predicted)):
-        part = _openings(found, where, context)
-        if part is None:
-            return None
-        rows += part
-    return rows
-
-
-def trips(found: Evidence, context: str) -> list[float] | None:
-    """For every hypothesis the probability that anything opens in a context."""
-    rows = opening(found, context)
-    return None if rows is None else _any_opens(rows)
-
-
-def _any_opens(rows: Sequence[tuple[float, float, float]]) -> list[float]:
-    return [1 - (1 - feeder) * (1 - pedestal) * (1 - aboard) for feeder, pedestal, aboard in rows]
-
-
-def one_load_trips(found: Evidence) -> list[tuple[float, float]] | None:
-    """For every hypothesis the least and greatest probability of a trip over the own loads, each running alone."""
-    rows: list[tuple[float, float]] = []
-    for where, one in enumerate(found.predicted):
-        columns = []
-        for context in contexts.expand("one_load", one.installation):
-            part = _openings(found, where, context)
-            if part is not None:
-                columns.append(_any_opens(part))
-        if not columns:
-            return None
-        rows += [(min(column), max(column)) for column in zip(*columns, strict=True)]
-    return rows
-
-
 # --- tests ---------------------------------------------------------------------------------------------------------
 
 
@@ -266,7 +190,7 @@ def _test_outcomes(found: Evidence, test: Test) -> dict[str, tuple[float, ...]] 
         rows = [table.get(found.point(index).cause, table[""]) for index in range(len(found.members))]
         return {outcome: tuple(row[place] for row in rows) for place, outcome in enumerate(test.outcomes)}
     if test.model == "trips":
-        chance = trips(found, test.context)
+        chance = found.trips(test.context)
         return None if chance is None else _reported({"holds": [1 - value for value in chance], "trips": chance})
     if test.model == "loads":
         return _load_outcomes(found)
@@ -277,7 +201,7 @@ def _test_outcomes(found: Evidence, test: Test) -> dict[str, tuple[float, ...]] 
 
 def _load_outcomes(found: Evidence) -> dict[str, tuple[float, ...]] | None:
     """One load at a time. One device decides them all, so its threshold is shared: the outcomes nest instead of multiplying."""
-    rows = one_load_trips(found)
+    rows = found.one_load_trips()
     if rows is None:
         return None
     holds, one, every = [1 - high for _, high in rows], [high - low for low, high in rows], [low for low, _ in rows]
@@ -376,12 +300,14 @@ def _question_outcomes(found: Evidence, name: str) -> dict[str, tuple[float, ...
         return None
     choices = QUESTION[name].choices
     seen = {value: LOOKS_LIKE.get(value, {value: 1.0}) for value in rows if value}
-    return _reported({choice: [seen[value].get(choice, 0.0) if value else 1 / len(choices) for value in rows] for choice in choices}, WRONG_FACT)
+    return _reported(
+        {choice: [seen[value].get(choice, 0.0) if value else 1 / len(choices) for value in rows] for choice in choices}, WRONG_FACT
+    )
 
 
 def _opened(found: Evidence) -> dict[str, tuple[float, ...]] | None:
     """What opened, given that something did: the first opener among those that would, as found."""
-    rows = opening(found, contexts.AS_FOUND)
+    rows = found.opening(contexts.AS_FOUND)
     if rows is None:
         return None
     stated = {"pedestal": 0.6, "aboard": 0.2, "both": 0.1, "feeder": 0.1}
@@ -404,21 +330,25 @@ MOMENTS = (("plug_in", "main_off"), ("main_on", "branches_off"), ("any_load", "t
 def _when(found: Evidence) -> dict[str, tuple[float, ...]] | None:
     """When it trips: the first switching step in which the solve says so, mixed with the cause's stated timing."""
     choices = QUESTION["when"].choices
-    steps = [(choice, trips(found, context)) for choice, context in MOMENTS]
-    singles = one_load_trips(found)
-    together = trips(found, contexts.AS_FOUND)
-    out = trips(found, "suspect_out")
+    steps = [(choice, found.trips(context)) for choice, context in MOMENTS]
+    singles = found.one_load_trips()
+    together = found.trips(contexts.AS_FOUND)
+    out = found.trips("suspect_out")
     if together is None or out is None or singles is None or any(step is None for _, step in steps):
         return None
     rows: dict[str, list[float]] = {choice: [] for choice in choices}
     for index in range(len(found.members)):
         timing = CAUSE[found.point(index).cause].timing
         reached, computed = 0.0, dict.fromkeys(choices, 0.0)
-        for choice, chance in [(choice, step[index]) for choice, step in steps if step is not None] + [("one_load", max(singles[index][1], together[index]))]:
+        for choice, chance in [(choice, step[index]) for choice, step in steps if step is not None] + [
+            ("one_load", max(singles[index][1], together[index]))
+        ]:
             computed[choice] = max(chance - reached, 0.0)
             reached = max(chance, reached)
         computed["switching_off"] = max(out[index] - together[index], 0.0)
         total = math.fsum(computed.values()) + UNEXPLAINED
         for choice in choices:
-            rows[choice].append(timing["computed"] * (computed[choice] / total + UNEXPLAINED / total / len(choices)) + timing.get(choice, 0.0))
+            rows[choice].append(
+                timing["computed"] * (computed[choice] / total + UNEXPLAINED / total / len(choices)) + timing.get(choice, 0.0)
+            )
     return _reported(rows)

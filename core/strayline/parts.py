@@ -45,9 +45,11 @@ class Part:
         return None if value is None else float(value)  # type: ignore[arg-type]
 
     def flag(self, name: str) -> bool:
+        """A yes-or-no parameter."""
         return bool(self.values[name])
 
     def text(self, name: str) -> str:
+        """A choice or an id."""
         return str(self.values[name])
 
 
@@ -62,12 +64,15 @@ class Installation:
     zones: dict[str, frozenset[str]] = field(default_factory=dict, compare=False)  # filled by `zone_parts`
 
     def part(self, part_id: str) -> Part:
+        """The part of this id."""
         return self.index[part_id]
 
     def of_kind(self, *kinds: str) -> tuple[Part, ...]:
+        """The parts of these kinds, in order from supply to load."""
         return tuple(part for part in self.parts if part.kind in kinds)
 
     def children(self, part_id: str) -> tuple[Part, ...]:
+        """The parts that hang on this one."""
         return tuple(part for part in self.parts if part_id in (base(parent) for parent in part.parents))
 
     def downstream(self, part_id: str) -> tuple[str, ...]:
@@ -226,7 +231,9 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
     if part.kind == "adapter":
         wanted = {"combining_y": (2,), "homemade": (1, 2)}.get(part.text("style"), (1,))
         if len(part.parents) not in wanted:
-            raise CaseError(f"{path}.from", f"a {part.values['style']} adapter has {' or '.join(map(str, wanted))} supply end", ", ".join(part.parents))
+            raise CaseError(
+                f"{path}.from", f"a {part.values['style']} adapter has {' or '.join(map(str, wanted))} supply end", ", ".join(part.parents)
+            )
     if part.kind == "load":
         given = [name for name in ("ohms", "watts", "amperes") if part.values[name] is not None]
         if len(given) != 1:

@@ -5,19 +5,27 @@ Each context is factored once per rewiring; severities and unknown facts are clo
 
 from __future__ import annotations
 
+import cmath
 import dataclasses
 import itertools
 import math
-from collections.abc import Sequence
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
 from strayline import contexts, solve
+from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE, CAUSES
-from strayline.causes import Effect, Fault, Shunt, effect, own_parts, severities
+from strayline.causes import Effect, Fault, Shunt, effect
 from strayline.components import CONNECTORS, SYSTEMS
 from strayline.installation import EARTH, build
 from strayline.network import Network, nodes
 from strayline.parts import Installation, Part, base
+from strayline.severities import severities
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from strayline.equations import Probe
 
 ROLES = ("feeder", "pedestal", "aboard")
 INFINITE_OHMS = 1e12
@@ -92,22 +100,25 @@ class Predictions:
         if context not in self._blades:
             left = contexts.left_behind(context, self.installation)
             solution = None if left is None or not left.blades else solve.solve(left)
-            self._blades[context] = max((abs(solution.voltage(blade.node) or 0.0) for blade in left.blades), default=0.0) if left and solution else 0.0
+            self._blades[context] = (
+                max((abs(solution.voltage(blade.node) or 0.0) for blade in left.blades), default=0.0) if left and solution else 0.0
+            )
         return self._blades[context]
 
 
 def predictions(installation: Installation, latents: Sequence[Sequence[Latent]]) -> Predictions:
     """All points of an installation: causes that can be there, their severities, and every combination of unknown facts."""
-    system = SYSTEMS[installation.of_kind("supply")[0].text("system")]
     points: list[Point] = []
     for cause in CAUSES:
         found = []
-        for severity in severities(cause.id, installation, system.volts):
+        for severity in severities(cause.id, installation):
             for combination in itertools.product(*latents):
                 known = {latent.name: latent.value for latent in combination}
                 if cause.requires and known.get(cause.requires[0], cause.requires[1]) != cause.requires[1]:
                     continue
-                found.append(Point(cause.id, severity.fault, combination, severity.weight * math.prod(latent.share for latent in combination)))
+                found.append(
+                    Point(cause.id, severity.fault, combination, severity.weight * math.prod(latent.share for latent in combination))
+                )
         total = math.fsum(point.share for point in found)
         points += [dataclasses.replace(point, share=point.share / total) for point in found]
     return Predictions(installation, tuple(points))
@@ -130,7 +141,8 @@ def watches(installation: Installation) -> tuple[Watch, ...]:
     found += [("pedestal", part) for part in mine if part.kind == "receptacle" and installation.children(part.id)]
     found += [("aboard", part) for part in mine if part.kind == "main"]
     return tuple(
-        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), rated_a(part)) for role, part in found
+        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), rated_a(part))
+        for role, part in found
     )
 
 
@@ -188,14 +200,17 @@ class _Prepared:
         self.continuity = _continuity(installation, self.factors, self.nodes) if context == "cord_in_hand" else {}
         self.seen: dict[tuple[Shunt, ...], Outlook] = {}
 
-    def _readings(self, installation: Installation, network: Network, present: set[str]) -> list[tuple[str, solve.Probe]]:
-        found = []
+    def _readings(self, installation: Installation, network: Network, present: set[str]) -> list[tuple[str, Probe]]:
+        found: list[tuple[str, Probe]] = []
         mine = own_parts(installation)
         cord = next((part.id for part in mine if part.kind == "cord"), None)
         if self.context in (contexts.AS_FOUND, "one_load") and cord:
             live = [(f"{cord}.{name}", 1) for name in ("L1", "L2", "N") if f"{cord}.{name}" in present]
             ground = [(f"{cord}.G", 1)] if f"{cord}.G" in present else []
-            found += [("cord_sum_a", solve.probe_current(self.factors, live + ground)), ("live_sum_a", solve.probe_current(self.factors, live))]
+            found += [
+                ("cord_sum_a", solve.probe_current(self.factors, live + ground)),
+                ("live_sum_a", solve.probe_current(self.factors, live)),
+            ]
             found.append(("ground_a", solve.probe_current(self.factors, ground)))
             own = [node for hull, node in network.hulls if node in self.nodes and any(part.id == hull for part in mine)]
             found += [(HULL, solve.probe_voltage(self.factors, node, EARTH)) for node in own[:1]]
@@ -220,10 +235,12 @@ class _Prepared:
         for lines in self.lines:
             line.append(max((abs(value) for value in values[place : place + len(lines)]), default=0.0))
             place += len(lines)
-        readings = {name: abs(value) if value == value else 0.0 for name, value in zip(self.names, values[place:], strict=True)}
+        readings = {name: abs(value) if not cmath.isnan(value) else 0.0 for name, value in zip(self.names, values[place:], strict=True)}
         if "meter_a" in readings:
             current = readings.pop("meter_a")
-            readings["meter_ohm"] = min(contexts.METER_VOLTS / current - contexts.METER_OHMS, INFINITE_OHMS) if current > 1e-12 else INFINITE_OHMS
+            readings["meter_ohm"] = (
+                min(contexts.METER_VOLTS / current - contexts.METER_OHMS, INFINITE_OHMS) if current > 1e-12 else INFINITE_OHMS
+            )
         readings |= self.continuity
         return Outlook(residual, loop, tuple(line), readings)
 

@@ -28,8 +28,14 @@ def handle(text: str) -> str:
         reply: dict[str, Any] = {"screen": screen(session.replay(answers), request["language"])}
     except StraylineError as error:
         reply = {"error": {"code": error.code, "message": error.message, "details": error.details}}
-    except Exception as error:  # a bug of ours must reach the person as a sentence, never as silence
-        reply = {"error": {"code": "bug", "message": "Something in the engine went wrong.", "details": {"kind": type(error).__name__, "text": str(error)[:200]}}}
+    except Exception as error:  # noqa: BLE001 - a bug of ours must reach the person as a sentence, never as silence
+        reply = {
+            "error": {
+                "code": "bug",
+                "message": "Something in the engine went wrong.",
+                "details": {"kind": type(error).__name__, "text": str(error)[:200]},
+            }
+        }
     return json.dumps({"id": request_id, "protocol": PROTOCOL, **reply}, ensure_ascii=False, default=str)
 
 

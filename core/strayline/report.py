@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from strayline import session
-from strayline.casefile import Case
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import GATE, QUESTIONS, UNKNOWN
 from strayline.catalogue.tests import TEST
@@ -13,6 +12,9 @@ from strayline.next_test import Candidate
 from strayline.posterior import groups
 from strayline.screen import Screen, current_text, percent, tonight_of, words_of
 from strayline.session import LOOKS, Answer, Session
+
+if TYPE_CHECKING:
+    from strayline.casefile import Case
 
 
 def diagnosis(case: Case) -> dict[str, Any]:
@@ -29,14 +31,21 @@ def diagnosis(case: Case) -> dict[str, Any]:
     if answered.problem:
         raise answered.problem.error()
     if answered.halted:
-        return {"ranking": [], "groups": [], "stop": "danger", "next_test": None, "tonight": [str(line) for line in words_of("en")["tonight.orders"]]}
+        return {
+            "ranking": [],
+            "groups": [],
+            "stop": "danger",
+            "next_test": None,
+            "tonight": [str(line) for line in words_of("en")["tonight.orders"]],
+        }
     assert answered.marginal is not None
     words = words_of("en")
     ranked = sorted(answered.marginal, key=lambda cause: (-answered.marginal[cause], cause))  # type: ignore[index]
     test = TEST.get(answered.test or "")
     return {
         "ranking": [
-            {"cause": cause, "kind": CAUSE[cause].kind, "title": words[f"cause.{cause}.title"], "probability": answered.marginal[cause]} for cause in ranked
+            {"cause": cause, "kind": CAUSE[cause].kind, "title": words[f"cause.{cause}.title"], "probability": answered.marginal[cause]}
+            for cause in ranked
         ],
         "groups": [list(group) for group in _groups(answered)],
         "stop": answered.verdict,
@@ -47,8 +56,11 @@ def diagnosis(case: Case) -> dict[str, Any]:
 
 def _groups(answered: Session) -> list[tuple[str, ...]]:
     """Causes that no test open to this person tells apart."""
-    assert answered.evidence is not None and answered.hypotheses is not None
-    allowed = [Candidate(test, TEST[test].minutes, outcomes) for test in answered.allowed if (outcomes := answered.evidence.outcomes("test", test))]
+    assert answered.evidence is not None
+    assert answered.hypotheses is not None
+    allowed = [
+        Candidate(test, TEST[test].minutes, outcomes) for test in answered.allowed if (outcomes := answered.evidence.outcomes("test", test))
+    ]
     return groups(answered.hypotheses, answered.weights, [candidate.outcomes for candidate in allowed])
 
 
@@ -86,7 +98,11 @@ def screen_text(screen: Screen) -> str:
     """One screen of the guided flow as text."""
     lines = ["", screen["title"], "=" * min(len(screen["title"]), 78), *screen["lead"]]
     if screen["verdict"]:
-        lines += [*screen["verdict"]["lead"], f"Who may fix it: {screen['verdict']['repair']}", *(f"  - {line}" for line in screen["verdict"]["remedy"])]
+        lines += [
+            *screen["verdict"]["lead"],
+            f"Who may fix it: {screen['verdict']['repair']}",
+            *(f"  - {line}" for line in screen["verdict"]["remedy"]),
+        ]
         lines.append(f"Tell the marina: {screen['verdict']['marina']}")
     lines += [f"  ! {line}" for line in screen["cautions"]]
     lines += [f"  {number}. {line}" for number, line in enumerate(screen["steps"], 1)]

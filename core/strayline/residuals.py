@@ -2,19 +2,28 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from strayline import devices, solve
-from strayline.casefile import Case
-from strayline.causes import applied, own_parts
+from strayline.boat import own_parts
+from strayline.causes import applied
 from strayline.errors import CaseError
 from strayline.installation import build
-from strayline.network import Branch, Network
 from strayline.parts import Installation, base, read
 from strayline.phasor import angle_deg, shown_angle
 
+if TYPE_CHECKING:
+    from strayline.casefile import Case
+    from strayline.network import Branch, Network
+
 LIKELY = 0.01  # a device below this is left out of the race
-CROSSING_KINDS = {"neutral": "other cord's neutral", "line": "other cord's line", "protective": "protective conductor", "bond": "bond", "source": "source"}
+CROSSING_KINDS = {
+    "neutral": "other cord's neutral",
+    "line": "other cord's line",
+    "protective": "protective conductor",
+    "bond": "bond",
+    "source": "source",
+}
 
 
 def stated_network(case: Case) -> tuple[Installation, Network]:
@@ -63,7 +72,9 @@ def _crossings(installation: Installation, network: Network, solution: solve.Sol
     for sensor in network.sensors:
         for branch, current in solve.crossings(network, solution, sensor.id):
             kind = _crossing_kind(branch, network, sensor.id in mine, mine)
-            found.append({"sensor": sensor.id, "branch": branch.id, "kind": kind, "ma": abs(current) * 1e3, "angle_deg": shown_angle(current)})
+            found.append(
+                {"sensor": sensor.id, "branch": branch.id, "kind": kind, "ma": abs(current) * 1e3, "angle_deg": shown_angle(current)}
+            )
     return found
 
 

@@ -60,8 +60,9 @@ def screen(session: Session, language: str = "en") -> Screen:
     """The whole screen of a session."""
     speech = _Speech(words_of(language))
     made: Screen = {
-        "kind": "question", "title": "", "lead": [], "cautions": [], "steps": [], "facts": [], "form": None, "why": "", "ranking": [], "verdict": None,
-        "tonight": [], "answered": _answered(session, speech), "assumed": [], "progress": speech.say("progress.start"), "version": __version__,
+        "kind": "question", "title": "", "lead": [], "cautions": [], "steps": [], "facts": [], "form": None, "why": "", "ranking": [],
+        "verdict": None, "tonight": [], "answered": _answered(session, speech), "assumed": [],
+        "progress": speech.say("progress.start"), "version": __version__,
     }  # fmt: skip
     if session.marginal is not None:
         made |= {"ranking": _ranking(session, speech), "tonight": tonight(session, speech), "assumed": _assumed(session, speech)}
@@ -81,7 +82,12 @@ def screen(session: Session, language: str = "en") -> Screen:
 
 
 def _stop(sign: str, speech: _Speech) -> Screen:
-    return {"kind": "stop", "title": speech.say(f"stop.{sign}.title"), "lead": speech.lines("stop.lead"), "steps": speech.lines(f"stop.{sign}.orders")}
+    return {
+        "kind": "stop",
+        "title": speech.say(f"stop.{sign}.title"),
+        "lead": speech.lines("stop.lead"),
+        "steps": speech.lines(f"stop.{sign}.orders"),
+    }
 
 
 def _question(session: Session, speech: _Speech, question: str, subject: str | None) -> Screen:
@@ -127,19 +133,28 @@ def _test(session: Session, speech: _Speech, test_id: str) -> Screen:
 
 
 def _form(
-    session: Session, speech: _Speech, question: str, subject: str | None, kind: str, legend: str, choices: list[dict[str, str]], unit: str = ""
+    session: Session,
+    speech: _Speech,
+    question: str,
+    subject: str | None,
+    kind: str,
+    legend: str,
+    choices: list[dict[str, str]],
+    unit: str = "",
 ) -> Screen:
     problem, value = "", ""
     found = session.problem
     if found and found.answer.question == question:
         problem, value = found.fields.get("sentence") or speech.say(found.key), found.answer.value[:200]
     return {
-        "question": question, "subject": subject, "input": kind, "legend": legend, "choices": choices, "unit": unit, "value": value, "problem": problem,
+        "question": question, "subject": subject, "input": kind, "legend": legend, "choices": choices, "unit": unit, "value": value,
+        "problem": problem,
     }  # fmt: skip
 
 
 def _outcome(session: Session, speech: _Speech) -> Screen:
-    assert session.marginal is not None and session.verdict is not None
+    assert session.marginal is not None
+    assert session.verdict is not None
     ranked = _ranked(session)
     causes = [] if session.verdict == "unknown" else list(session.group) or [ranked[0]]
     share = math.fsum(session.marginal[cause] for cause in causes)
@@ -155,9 +170,17 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
         "stop": session.verdict,
         "causes": causes,
         "title": title,
-        "lead": [line for cause in causes for line in (*([speech.say(f"cause.{cause}.title")] if len(causes) > 1 else []), *speech.lines(f"cause.{cause}.lead"))],
+        "lead": [
+            line
+            for cause in causes
+            for line in (*([speech.say(f"cause.{cause}.title")] if len(causes) > 1 else []), *speech.lines(f"cause.{cause}.lead"))
+        ],
         "repair": "; ".join(speech.say(f"repair.{role}") for role in fixers) or speech.say("repair.technician"),
-        "remedy": list(dict.fromkeys(line for cause in causes for line in (*speech.lines(f"cause.{cause}.remedy"), *speech.lines(f"cause.{cause}.confirm")))),
+        "remedy": list(
+            dict.fromkeys(
+                line for cause in causes for line in (*speech.lines(f"cause.{cause}.remedy"), *speech.lines(f"cause.{cause}.confirm"))
+            )
+        ),
         "marina": " ".join(dict.fromkeys(line for cause in causes for line in speech.lines(f"cause.{cause}.marina"))),
     }
     form = None
@@ -204,7 +227,8 @@ def _ranking(session: Session, speech: _Speech) -> list[Screen]:
             break
         told: Screen = {"numbers": [], "for": [], "against": []} if place > 2 else _why(session, speech, cause, spoken)
         rows.append({
-            "cause": cause, "kind": CAUSE[cause].kind, "title": speech.say(f"cause.{cause}.title"), "percent": percent(share), "share": f"{share:.4f}", **told,
+            "cause": cause, "kind": CAUSE[cause].kind, "title": speech.say(f"cause.{cause}.title"), "percent": percent(share),
+            "share": f"{share:.4f}", **told,
         })  # fmt: skip
     return rows
 
@@ -226,7 +250,9 @@ def _why(session: Session, speech: _Speech, cause: str, spoken: list[dict[str, f
     hypotheses = session.hypotheses
     assert hypotheses is not None
     place = hypotheses.causes.index(cause)
-    best = max(hypotheses.members[place], key=lambda index: (float(f"{session.weights[index]:.9e}"), -index))  # last bits differ between builds
+    best = max(
+        hypotheses.members[place], key=lambda index: (float(f"{session.weights[index]:.9e}"), -index)
+    )  # last bits differ between builds
     where, number, _ = evidence.members[best]
     made = evidence.predicted[where].outlooks(contexts.AS_FOUND)
     numbers = []
@@ -242,20 +268,22 @@ def _why(session: Session, speech: _Speech, cause: str, spoken: list[dict[str, f
                     numbers.append(speech.say("why.unprotected", current=current_text(amperes)))
                 else:
                     said = speech.say(f"verdict.{verdict.replace(' ', '_')}")
-                    numbers.append(speech.say("why.residual", device=speech.say(f"device.{role}"), current=current_text(amperes), verdict=said))
+                    numbers.append(
+                        speech.say("why.residual", device=speech.say(f"device.{role}"), current=current_text(amperes), verdict=said)
+                    )
         hull = outlook.readings.get(HULL, 0.0)
         if hull >= 0.5:
             numbers.append(speech.say("why.hull", volts=f"{hull:.1f} V" if hull < 9.95 else f"{hull:.0f} V"))
     told: list[tuple[float, str]] = []
     for observation, ratios in zip(session.observations, spoken, strict=True):
         ratio = ratios[cause]
-        told.append((ratio, _quoted(session, speech, observation.answer, ratio)))
+        told.append((ratio, _quoted(speech, observation.answer, ratio)))
     speak_for = sorted((pair for pair in told if pair[0] >= TELLING_RATIO), key=lambda pair: -pair[0])[:3]
     against = sorted((pair for pair in told if pair[0] <= 1 / TELLING_RATIO), key=lambda pair: pair[0])[:3]
     return {"numbers": numbers, "for": [line for _, line in speak_for], "against": [line for _, line in against]}
 
 
-def _quoted(session: Session, speech: _Speech, answer: Answer, ratio: float) -> str:
+def _quoted(speech: _Speech, answer: Answer, ratio: float) -> str:
     asked, value = _asked(speech, answer), _value(speech, answer)
     times = max(ratio, 1 / ratio) if ratio > 0 else math.inf
     shown = f"{times:.1f}" if times < 9.95 else f"{times:.0f}" if times < 1000 else "> 1000"
@@ -288,7 +316,13 @@ def _value(speech: _Speech, answer: Answer) -> str:
 
 def _answered(session: Session, speech: _Speech) -> list[Screen]:
     return [
-        {"question": answer.question, "subject": answer.subject, "text": _asked(speech, answer), "value": answer.value, "value_text": _value(speech, answer)}
+        {
+            "question": answer.question,
+            "subject": answer.subject,
+            "text": _asked(speech, answer),
+            "value": answer.value,
+            "value_text": _value(speech, answer),
+        }
         for answer in session.answers
         if answer.question not in (GATE.id, CLEAR.id)
     ]

@@ -10,15 +10,16 @@ import dataclasses
 import functools
 import json
 import math
-from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from strayline import arrangements, contexts, likelihood
 from strayline.allowed import Situation, refusal, unwatched
+from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
 from strayline.catalogue.tests import ROLES, TEST, TESTS
-from strayline.causes import Shunt, own_parts
+from strayline.causes import Shunt
 from strayline.errors import CaseError, RequestError
 from strayline.installation import EARTH
 from strayline.likelihood import LIMITS, Evidence
@@ -27,6 +28,9 @@ from strayline.parts import Installation, read
 from strayline.posterior import Hypotheses, cause_marginal, misfit, posterior
 from strayline.predict import HULL, Latent, predictions
 from strayline.units import QuantityError, parse_quantity
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping, Sequence
 
 CANNOT = "cannot"
 OVER_RANGE = "over_range"  # the meter shows no end
@@ -125,15 +129,16 @@ def replay(answers: Sequence[Answer], installation: object = None) -> Session:
         return Session(ordered, facts, problem, ask=(GATE.id, None))
     if problem:
         question = problem.answer.question
-        where = {"test": question} if question in TEST else {"ask": (question, problem.answer.subject)}
-        return Session(ordered, facts, problem, **where)  # type: ignore[arg-type]
+        if question in TEST:
+            return Session(ordered, facts, problem, test=question)
+        return Session(ordered, facts, problem, ask=(question, problem.answer.subject))
     epoch, fixed = _epoch(ordered)
     if "combining_y" in fixed and facts.get("plug") == "combining_y" and known is None:
         facts |= {"plug": "straight_adapter"}  # the Y is out of use, and one plug stands in its place
     given = {answer.question for answer in ordered} if not fixed else {answer.question for answer in ordered} | {"opened", "when"}
-    for question in QUESTIONS:
-        if question.opening and question.id not in given and _applies(question.id, facts, installation):
-            return Session(ordered, facts, ask=(question.id, None))
+    for asked in QUESTIONS:
+        if asked.opening and asked.id not in given and _applies(asked.id, facts, installation):
+            return Session(ordered, facts, ask=(asked.id, None))
     return _inferred(ordered, facts, epoch, fixed, installation)
 
 
@@ -247,12 +252,15 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     situation = Situation(facts, evidence, weights, reports, last)
     tests = [test for test in TESTS if test.id not in done and not refusal(test, situation)]
     candidates = [Candidate(test.id, test.minutes, outcomes) for test in tests if (outcomes := evidence.outcomes("test", test.id))]
-    looks = [Candidate(look, FREE_MINUTES, outcomes) for look in LOOKS if look not in looked and (outcomes := evidence.outcomes("question", look))]
+    looks = [
+        Candidate(look, FREE_MINUTES, outcomes)
+        for look in LOOKS
+        if look not in looked and (outcomes := evidence.outcomes("question", look))
+    ]
     physical = sum(value not in (UNKNOWN, CANNOT) for _, value in reports)
     session = Session(
-        ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal, misfits=misfits,
-        tests_done=physical, allowed=tuple(test.id for test in tests),
-        unwatched=unwatched(facts, last),
+        ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal,
+        misfits=misfits, tests_done=physical, allowed=tuple(test.id for test in tests), unwatched=unwatched(facts, last),
     )  # fmt: skip
     if _dangerous(evidence, weights):
         return _with(session, verdict="danger")

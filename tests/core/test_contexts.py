@@ -8,7 +8,8 @@ import pytest
 
 from strayline import arrangements, contexts
 from strayline.arrangements import Arrangement
-from strayline.causes import Fault, own_parts
+from strayline.boat import own_parts
+from strayline.causes import Fault
 from strayline.installation import build
 from strayline.parts import Installation, read
 from strayline.predict import INFINITE_OHMS, Point, Predictions

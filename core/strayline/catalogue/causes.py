@@ -38,7 +38,9 @@ _AT_ONCE = {"computed": 0.90, "minutes": 0.03, "random": 0.05, "wet": 0.02}
 _WET = {"computed": 0.50, "minutes": 0.02, "random": 0.13, "wet": 0.35}
 
 CAUSES: tuple[Cause, ...] = (
-    Cause("appliance_leak", "fault", 0.28, 0.36, "technician", True, timing={"computed": 0.72, "minutes": 0.13, "random": 0.12, "wet": 0.03}),
+    Cause(
+        "appliance_leak", "fault", 0.28, 0.36, "technician", True, timing={"computed": 0.72, "minutes": 0.13, "random": 0.12, "wet": 0.03}
+    ),
     Cause("wet_cord", "fault", 0.08, 0.12, "user", True, timing=_WET),
     Cause("wet_inlet", "fault", 0.05, 0.06, "technician", True, timing=_WET),
     Cause("wet_pedestal", "fault", 0.03, 0.03, "electrician", True, timing=_WET),
@@ -50,7 +52,9 @@ CAUSES: tuple[Cause, ...] = (
     Cause("line_ground_exchanged", "fault", 0.004, 0.003, "technician", True, timing=_AT_ONCE),
     Cause("neutral_ahead_of_device", "fault", 0.03, 0.03, "technician", timing=_AT_ONCE),
     Cause("open_ground_with_leak", "fault", 0.03, 0.03, "technician", True, timing=_AT_ONCE),
-    Cause("feeder_accumulation", "fault", 0.04, 0.04, "electrician", timing={"computed": 0.35, "minutes": 0.05, "random": 0.50, "wet": 0.10}),
+    Cause(
+        "feeder_accumulation", "fault", 0.04, 0.04, "electrician", timing={"computed": 0.35, "minutes": 0.05, "random": 0.50, "wet": 0.10}
+    ),
     Cause("touchy_device", "fault", 0.04, 0.04, "electrician", timing={"computed": 0.40, "minutes": 0.05, "random": 0.50, "wet": 0.05}),
     Cause("overload", "fault", 0.06, 0.06, "user", timing={"computed": 0.10, "minutes": 0.82, "random": 0.07, "wet": 0.01}),
     Cause("nothing_now", "fault", 0.04, 0.05, "technician", timing={"computed": 0.20, "minutes": 0.05, "random": 0.55, "wet": 0.20}),

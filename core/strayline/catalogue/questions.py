@@ -23,8 +23,17 @@ class Question:
 
 # Signs on the safety gate. Each has its own instructions on the stop screen.
 GATE_SIGNS: tuple[str, ...] = (
-    "person_in_water", "person_down", "tingling", "bright_or_dim", "hot_plug", "smell_or_bang", "water_in_outlet",
-    "pedestal_damaged", "cord_in_water", "lightning", "taking_water",
+    "person_in_water",
+    "person_down",
+    "tingling",
+    "bright_or_dim",
+    "hot_plug",
+    "smell_or_bang",
+    "water_in_outlet",
+    "pedestal_damaged",
+    "cord_in_water",
+    "lightning",
+    "taking_water",
 )
 
 GATE = Question("gate", ("none", *GATE_SIGNS))
