@@ -16,6 +16,7 @@ from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, GATE_SIGNS, QUESTION, UNKNOWN
 from strayline.catalogue.tests import TEST
 from strayline.likelihood import WRONG
+from strayline.next_test import NOTHING_NOW
 from strayline.posterior import likelihood_ratios
 from strayline.predict import HULL, ROLES
 from strayline.session import CANNOT, DONE, FIXED, LOOKS, OVER_RANGE, OVER_UNITS, SETUP, Answer, Session, choices_of
@@ -27,7 +28,6 @@ LANGUAGES = ("en",)
 SHOWN_CAUSES = 6
 SHOWN_SHARE = 0.01
 TONIGHT_SHARE = 0.01  # tonight's advice is the worst case over every cause above this
-TONIGHT_LINES = 8
 TELLING_RATIO = 1.25  # an observation that changes the odds by less says little
 
 
@@ -181,7 +181,7 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
                 line for cause in causes for line in (*speech.lines(f"cause.{cause}.remedy"), *speech.lines(f"cause.{cause}.confirm"))
             )
         ),
-        "marina": " ".join(dict.fromkeys(line for cause in causes for line in speech.lines(f"cause.{cause}.marina"))),
+        "marina": " ".join(dict.fromkeys(line for cause in causes or (NOTHING_NOW,) for line in speech.lines(f"cause.{cause}.marina"))),
     }
     form = None
     if session.verdict in ("named", "group"):
@@ -334,7 +334,7 @@ def tonight(session: Session, speech: _Speech) -> list[str]:
     marginal = session.marginal
     likely = [cause for cause in _ranked(session) if marginal[cause] > TONIGHT_SHARE]
     ordered = sorted(likely, key=lambda cause: (not CAUSE[cause].lethal, likely.index(cause)))
-    return list(dict.fromkeys(line for cause in ordered for line in speech.lines(f"cause.{cause}.tonight")))[:TONIGHT_LINES]
+    return list(dict.fromkeys(line for cause in ordered for line in speech.lines(f"cause.{cause}.tonight")))
 
 
 def tonight_of(session: Session, language: str = "en") -> list[str]:
@@ -350,12 +350,13 @@ def _assumed(session: Session, speech: _Speech) -> list[str]:
     installation = session.evidence.predicted[0].installation
     for key, value, unit in installation.assumed:
         if key.startswith(("cord.", "feeder.")) and isinstance(value, float | int):
-            lines.append(speech.say("assumed.default", what=key.replace("_", " ").replace(".", " "), value=f"{value:g} {unit}".strip()))
+            what = key.removesuffix(f"_{unit}").replace("_", " ").replace(".", " ")
+            lines.append(speech.say("assumed.default", what=what, value=f"{value:g} {unit}".strip().replace("mm2", "mm²")))
     return [*lines, speech.say("assumed.mistakes", percent=percent(WRONG)), speech.say("assumed.steady")]
 
 
 def _misfits(session: Session, speech: _Speech) -> str:
-    return "; ".join(_asked(speech, session.observations[index].answer) for index in session.misfits)
+    return ", ".join(f"“{_asked(speech, session.observations[index].answer)}”" for index in session.misfits)
 
 
 def _progress(session: Session, speech: _Speech) -> str:

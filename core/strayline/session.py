@@ -244,7 +244,8 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
     observations = tuple(found for answer in ordered if (found := _observation(evidence, answer, epoch)))
     weights = posterior(hypotheses, [observation.likelihood for observation in observations])
     marginal = cause_marginal(hypotheses, weights)
-    misfits = misfit(hypotheses, weights, [one.likelihood for one in observations], [one.outcomes for one in observations])
+    unlikely = misfit(hypotheses, weights, [one.likelihood for one in observations], [one.outcomes for one in observations])
+    misfits = tuple(index for index in unlikely if observations[index].answer.question not in LOOKS)  # a rare fact contradicts nothing
     reports = [(answer.question, answer.value) for answer in ordered if answer.seq > epoch and answer.question in TEST]
     done = {test for test, _ in reports}
     looked = {answer.question for answer in ordered if answer.question in LOOKS}
@@ -262,22 +263,24 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
         ordered, facts, evidence=evidence, hypotheses=hypotheses, weights=weights, observations=observations, marginal=marginal,
         misfits=misfits, tests_done=physical, allowed=tuple(test.id for test in tests), unwatched=unwatched(facts, last),
     )  # fmt: skip
-    if _dangerous(evidence, weights):
-        return _with(session, verdict="danger")
+    dangerous = _dangerous(evidence, hypotheses, weights)
+    if dangerous:
+        return _with(session, verdict="danger", group=dangerous)
     why = stop(hypotheses, weights, candidates, physical, len(misfits))
-    if why and facts.get("plug") == "homemade":
-        return _with(session, verdict="danger")  # whatever it is, a hook-up that nobody can vouch for is not to be used
+    chosen = choose(hypotheses, weights, [*candidates, *looks], first="without_y")
+    if facts.get("plug") == "homemade" and (why or chosen is None):
+        deadly = max((cause for cause in marginal if CAUSE[cause].lethal), key=marginal.__getitem__)
+        return _with(session, verdict="danger", group=(deadly,))  # a hook-up that nobody can vouch for is not to be used
     if why:
         group = leading_group(hypotheses, weights, candidates) if why == "group" else ()
         if group[:1] == (NOTHING_NOW,):
             why = NOTHING_NOW  # what cannot be told from it here is shown with it
         return _with(session, verdict=why, group=group)
     leader = max(marginal, key=marginal.__getitem__)
-    chosen = choose(hypotheses, weights, [*candidates, *looks], first="without_y")
     if marginal[leader] >= NAMED and chosen and chosen.id != "without_y":
         return _with(session, test=verification(hypotheses, weights, candidates, leader))
     if chosen is None:
-        return _with(session, verdict="danger" if facts.get("plug") == "homemade" else "unknown")
+        return _with(session, verdict="unknown")
     if chosen.id in LOOKS:
         return _with(session, ask=(chosen.id, None))
     return _with(session, test=chosen.id)
@@ -313,7 +316,15 @@ def _observation(evidence: Evidence, answer: Answer, epoch: int) -> Observation 
     return Observation(answer, outcomes[answer.value], len(outcomes))
 
 
-def _dangerous(evidence: Evidence, weights: Sequence[float]) -> bool:
-    """Whether the boat's metal stands at a dangerous voltage in more than a small share of what is still possible."""
+def _dangerous(evidence: Evidence, hypotheses: Hypotheses, weights: Sequence[float]) -> tuple[str, ...]:
+    """The causes that put the boat's metal at a dangerous voltage, likeliest first, where together that is more than a small share of all.
+
+    Empty where it is less. Of several only those are given that bring a fair part of it.
+    """
     volts = evidence.readings(contexts.AS_FOUND, HULL)
-    return math.fsum(weight for weight, value in zip(weights, volts, strict=True) if value > DANGEROUS_HULL_VOLTS) > DANGER_SHARE
+    live = [weight if value > DANGEROUS_HULL_VOLTS else 0.0 for weight, value in zip(weights, volts, strict=True)]
+    total = math.fsum(live)
+    if total <= DANGER_SHARE:
+        return ()
+    shares = cause_marginal(hypotheses, live)
+    return tuple(sorted((cause for cause in shares if shares[cause] > total / 4), key=lambda cause: (-shares[cause], cause)))
