@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING, Any
 import pytest
 
 from strayline.catalogue.causes import CAUSE
+from strayline.catalogue.en import WORDS
 from strayline.catalogue.questions import GATE, QUESTION
 from strayline.catalogue.tests import TEST
 from strayline.protocol import handle
@@ -42,7 +43,8 @@ SHAPE: dict[str, Any] = {
     "steps": [""],
     "facts": [{"label": "", "text": ""}],
     "form": {
-        "question": "", "subject": None, "input": "", "legend": "", "choices": [{"value": "", "label": ""}], "unit": "", "value": "", "problem": "",
+        "question": "", "subject": None, "input": "", "legend": "", "choices": [{"value": "", "label": ""}],
+        "unit": "", "value": "", "problem": "",
     },
     "why": "",
     "ranking": [ROW],
@@ -104,7 +106,7 @@ def test_a_case_shows_what_it_is_for(name: str) -> None:
     elif kind == "outcome":
         assert shown["verdict"]["stop"] == what
     else:
-        assert shown["title"] == WRITE["WORDS"][f"stop.{what}.title"]
+        assert shown["title"] == WORDS[f"stop.{what}.title"]
 
 
 def test_between_them_they_show_everything() -> None:
@@ -162,7 +164,7 @@ def test_a_test_that_energises_has_cautions(name: str) -> None:
 
 @pytest.mark.parametrize("name", FORMS)
 def test_not_knowing_is_always_an_answer(name: str) -> None:
-    """Every form takes "I don't know", a test also "I can't"; only the way on after an outcome takes neither. Values differ from each other."""
+    """Every form takes "I don't know", a test also "I can't"; only the way on after an outcome takes neither. No value comes twice."""
     form = FORMS[name]
     values = [choice["value"] for choice in form["choices"]]
     assert len(values) == len(set(values))
@@ -192,7 +194,7 @@ def test_a_ranking_is_in_order_and_its_numbers_agree(name: str) -> None:
     ranking = SCREENS[name]["ranking"]
     shares = [float(row["share"]) for row in ranking]
     assert [row["cause"] for row in ranking] == list(dict.fromkeys(row["cause"] for row in ranking))
-    assert set(row["cause"] for row in ranking) <= set(CAUSE)
+    assert {row["cause"] for row in ranking} <= set(CAUSE)
     assert shares == sorted(shares, reverse=True)
     assert sum(shares) <= 1.0 + 5e-5 * len(shares)  # four places each
     for row, share in zip(ranking, shares, strict=True):
@@ -220,8 +222,9 @@ def test_a_ranking_comes_with_advice_for_tonight(name: str) -> None:
 @each_screen
 def test_answered_lists_every_answer_but_the_gate_in_order(name: str) -> None:
     """What was answered is shown in order and in words, for changing; the gate and the line before power are not among it."""
-    given = [row for row in PAIRS[name]["request"]["answers"] if row["question"] not in ("gate", "clear")]
+    keys = ("question", "subject", "value")
+    given = [[row[key] for key in keys] for row in PAIRS[name]["request"]["answers"] if row["question"] not in ("gate", "clear")]
     shown = SCREENS[name]["answered"]
-    assert [(row["question"], row["subject"], row["value"]) for row in shown] == [(row["question"], row["subject"], row["value"]) for row in given]
+    assert [[row[key] for key in keys] for row in shown] == given
     assert all(row["text"] for row in shown)
     assert all(row["value_text"] for row in shown if row["value"])

@@ -11,7 +11,6 @@ import tomllib
 from pathlib import Path
 from typing import Any
 
-from strayline.catalogue.en import WORDS
 from strayline.protocol import PROTOCOL, handle
 
 HERE = Path(__file__).parent

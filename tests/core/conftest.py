@@ -33,7 +33,7 @@ SETUPS: tuple[dict[str, str], ...] = (
 )
 ROLES = ("user", "instructed", "technician", "electrician", "unknown")
 TOOLS = ("none", "multimeter", "clamp", "insulation", "unknown")
-LONGEST = 40
+LONGEST = 90
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,6 +47,7 @@ class Step:
     test: str | None
     verdict: str | None
     halted: str | None
+    group: tuple[str, ...]
 
 
 def numbered(pairs: Sequence[tuple[str, str | None, str]]) -> list[Answer]:
@@ -76,7 +77,7 @@ def _walk(number: int, setup: Mapping[str, str], role: str, tools: str) -> list[
     while len(given) < LONGEST:
         answers = tuple(numbered(given))
         session = replay(answers)
-        steps.append(Step(number, answers, session.facts, session.ask, session.test, session.verdict, session.halted))
+        steps.append(Step(number, answers, session.facts, session.ask, session.test, session.verdict, session.halted, session.group))
         if session.halted:
             break
         if session.verdict:
