@@ -57,16 +57,19 @@ def build(installation: Installation) -> Network:
     for part in installation.parts:
         _BUILDERS[part.kind](part, wiring)
     present = {branch.id for branch in wiring.branches}
-    nodes = {node for branch in wiring.branches for node in (branch.from_node, branch.to_node)}
+    nodes: dict[str, set[str]] = {}  # part id -> its nodes
+    for branch in wiring.branches:
+        for node in (branch.from_node, branch.to_node):
+            nodes.setdefault(base(node), set()).add(node)
     sensors = tuple(_sensor(part, installation, present, nodes) for part in installation.of_kind("feeder", "receptacle", "main"))
     hulls = tuple((part.id, f"{part.id}.metal") for part in installation.of_kind("hull"))
     return checked(Network(wiring.system.hertz, EARTH, tuple(wiring.branches), sensors, tuple(wiring.blades), hulls))
 
 
-def _sensor(part: Part, installation: Installation, present: set[str], nodes: set[str]) -> Sensor:
+def _sensor(part: Part, installation: Installation, present: set[str], nodes: Mapping[str, set[str]]) -> Sensor:
     enclosed = tuple(f"{part.id}.{conductor}" for conductor in ("L1", "L2", "N") if f"{part.id}.{conductor}" in present)
-    owners = zone_parts(installation, part)
-    return Sensor(part.id, enclosed, part.text("device"), frozenset(node for node in nodes if base(node) in owners))
+    zone = frozenset(node for owner in zone_parts(installation, part) for node in nodes.get(owner, ()))
+    return Sensor(part.id, enclosed, part.text("device"), zone)
 
 
 def zone_parts(installation: Installation, part: Part) -> frozenset[str]:
@@ -81,19 +84,18 @@ def zone_parts(installation: Installation, part: Part) -> frozenset[str]:
 
 
 def _zone_parts(installation: Installation, part: Part) -> frozenset[str]:
-    found = set(installation.downstream(part.id))
     if part.kind != "receptacle":
-        return frozenset(found)
-    grown = True
-    while grown:
-        before = len(found)
-        for member in installation.parts:
-            parents = {base(parent) for parent in member.parents if parent}
-            if member.id in found and member.kind != "receptacle":
-                found |= {parent for parent in parents if installation.part(parent).kind not in ASHORE}
-            elif parents & found and member.kind not in ASHORE:
-                found.add(member.id)
-        grown = len(found) > before
+        return installation.downstream(part.id)
+    found = {part.id}
+    waiting = [part]
+    while waiting:
+        member = waiting.pop()
+        near = list(installation.children(member.id))
+        if member.kind != "receptacle":  # beyond a receptacle lies the dock
+            near += [installation.part(base(parent)) for parent in member.parents if parent]
+        new = [one for one in near if one.kind not in ASHORE and one.id not in found]
+        found.update(one.id for one in new)
+        waiting += new
     return frozenset(found)
 
 

@@ -60,6 +60,7 @@ class Installation:
     parts: tuple[Part, ...]
     assumed: tuple[tuple[str, object, str], ...] = ()
     index: Mapping[str, Part] = field(default_factory=dict, compare=False)
+    below: Mapping[str, tuple[Part, ...]] = field(default_factory=dict, compare=False)  # part id -> what hangs on it
     paths: Mapping[str, str] = field(default_factory=dict, compare=False)  # part id -> its key path in the case
     zones: dict[str, frozenset[str]] = field(default_factory=dict, compare=False)  # filled by `zone_parts`
 
@@ -73,15 +74,17 @@ class Installation:
 
     def children(self, part_id: str) -> tuple[Part, ...]:
         """The parts that hang on this one."""
-        return tuple(part for part in self.parts if part_id in (base(parent) for parent in part.parents))
+        return self.below.get(part_id, ())
 
-    def downstream(self, part_id: str) -> tuple[str, ...]:
-        """The ids fed from this part, itself first, in order from supply to load."""
+    def downstream(self, part_id: str) -> frozenset[str]:
+        """The ids fed from this part, its own among them."""
         found = {part_id}
-        for part in self.parts:
-            if any(base(parent) in found for parent in part.parents):
-                found.add(part.id)
-        return tuple(part.id for part in self.parts if part.id in found)
+        waiting = [part_id]
+        while waiting:
+            new = [part.id for part in self.children(waiting.pop()) if part.id not in found]
+            found.update(new)
+            waiting += new
+        return frozenset(found)
 
 
 def base(reference: str) -> str:
@@ -125,7 +128,12 @@ def read(raw: object, where: str = "installation") -> Installation:
     _check_mated_once(ordered, paths)
     _check_supply(ordered, where)
     _check_systems(ordered, paths)
-    return Installation(ordered, tuple(assumed), {part.id: part for part in ordered}, paths)
+    below: dict[str, list[Part]] = {}
+    for part in ordered:
+        for parent in {base(parent) for parent in part.parents if parent}:
+            below.setdefault(parent, []).append(part)
+    hanging = {name: tuple(children) for name, children in below.items()}
+    return Installation(ordered, tuple(assumed), {part.id: part for part in ordered}, hanging, paths)
 
 
 def _read_part(row: object, path: str) -> tuple[Part, list[tuple[str, object, str]]]:
