@@ -12,7 +12,6 @@ from strayline import arrangements, contexts, session
 from strayline.arrangements import Arrangement
 from strayline.catalogue.causes import CAUSE
 from strayline.causes import Fault, applied, effect
-from strayline.components import SYSTEMS
 from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.network import Network, nodes, with_branches
