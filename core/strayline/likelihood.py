@@ -235,7 +235,7 @@ def _continuity_outcomes(found: Evidence) -> dict[str, tuple[float, ...]] | None
         ohms = row.readings
         if not ohms:
             return None
-        crossed = ohms["neutral_to_ground"] < 1.0 <= ohms["neutral_through"]
+        crossed = ohms["neutral_to_ground"] < 1.0 <= ohms["neutral_through"] or ohms["line_to_ground"] < 1.0
         seen.append("exchanged" if crossed else "ground_open" if ohms["ground_through"] > 10.0 else "fine")
     return _reported({outcome: [float(value == outcome) for value in seen] for outcome in TEST["adapter_continuity"].outcomes})
 

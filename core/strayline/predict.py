@@ -246,7 +246,7 @@ class _Prepared:
 
 
 def _continuity(installation: Installation, factors: solve.Factors, present: frozenset[str]) -> dict[str, float]:
-    """Ohms end to end of the cord (and adapter) in the hand: neutral to neutral, neutral to far ground, ground to ground."""
+    """Ohms end to end of the cord (and adapter) in the hand: neutral to neutral, neutral and line to far ground, ground to ground."""
     mine = own_parts(installation)
     cords = [part for part in mine if part.kind in ("cord", "adapter")]
     if not cords:
@@ -262,5 +262,6 @@ def _continuity(installation: Installation, factors: solve.Factors, present: fro
     return {
         "neutral_through": ohms(f"{near}.N", f"{far}.N"),
         "neutral_to_ground": ohms(f"{near}.N", f"{far}.G"),
+        "line_to_ground": ohms(f"{near}.L1", f"{far}.G"),
         "ground_through": ohms(f"{near}.G", f"{far}.G"),
     }
