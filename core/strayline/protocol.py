@@ -36,7 +36,8 @@ def handle(text: str) -> str:
                 "details": {"kind": type(error).__name__, "text": str(error)[:200]},
             }
         }
-    return json.dumps({"id": request_id, "protocol": PROTOCOL, **reply}, ensure_ascii=False, default=str)
+    text_back = json.dumps({"id": request_id, "protocol": PROTOCOL, **reply}, ensure_ascii=False, default=str)
+    return text_back.encode("utf-8", "replace").decode("utf-8")  # half of a surrogate pair, typed or sent, would get through nowhere
 
 
 def _parsed(text: str) -> dict[str, Any]:
