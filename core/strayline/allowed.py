@@ -1,8 +1,8 @@
 """Which tests may be proposed to this person, here and now. These rules outrank every gain in information.
 
 A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because an end is burnt, because a plug
-would be left with live blades, or because it would energise again what has tripped: every time power goes on, something has been taken
-away first.
+would be left with live blades or the boat's metal may be live, or because it would energise again what has tripped: every time power
+goes on, something has been taken away first.
 """
 
 from __future__ import annotations
@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING
 
 from strayline.catalogue.questions import UNKNOWN
 from strayline.catalogue.tests import ROLES, TEST, TOOLS, Test
+from strayline.predict import HULL
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
@@ -21,6 +22,8 @@ if TYPE_CHECKING:
 
 LIVE_BLADE_VOLTS = 10.0  # a bare blade above this vetoes the state that leaves it
 TRIPPED = ("trips", "any_trips")  # after "one_trips" that load stays off, and the rest may run without it
+DANGEROUS_HULL_VOLTS = 50.0  # conventional touch-voltage limit, IEC 60364-4-41
+LIVE_HULL_SHARE = 0.02  # a test is not worth a greater chance than this of live metal under somebody's hand
 INVERTER_SHARE = 0.2  # below this an inverter aboard is not worth a test of its own
 
 # How much is energised in each context, from the bare outlet to the boat as it was found. The states on one rung hold the same
@@ -47,7 +50,10 @@ class Situation:
 
 
 def refusal(test: Test, situation: Situation) -> str | None:
-    """Why a test may not be proposed: "role", "tool", "need", "unwatched", "damaged", "tripped" or "live_blades"; None when it may."""
+    """Why a test may not be proposed, None when it may.
+
+    "role", "tool", "need", "unwatched", "damaged", "tripped", "live_blades" or "live_hull".
+    """
     facts = situation.facts
     role, tool = facts.get("role", UNKNOWN), facts.get("tools", UNKNOWN)
     if (role if role in ROLES else ROLES[0]) not in test.roles:
@@ -66,7 +72,13 @@ def refusal(test: Test, situation: Situation) -> str | None:
         return "tripped"
     if any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in situation.evidence.predicted):
         return "live_blades"
-    return None
+    return "live_hull" if live_hull(situation.evidence, situation.weights, test.context) > LIVE_HULL_SHARE else None
+
+
+def live_hull(evidence: Evidence, weights: Sequence[float], context: str) -> float:
+    """Probability that the boat's metal would stand at a dangerous voltage against the water or the ground around it in a context."""
+    volts = evidence.readings(context, HULL)
+    return math.fsum(weight for weight, value in zip(weights, volts, strict=False) if value > DANGEROUS_HULL_VOLTS)
 
 
 def unwatched(facts: Mapping[str, str], last: Mapping[str, str]) -> bool:

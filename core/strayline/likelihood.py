@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from strayline.predict import Watch
 
 WRONG = 0.05  # share of answers that are wrong (method: assuming less costs far more than assuming this)
-WRONG_FACT = 0.03  # the same for a plain fact the person can see
+WRONG_FACT = {"afloat": 0.005, "neighbour": 0.03, "inverter": 0.03}  # the same for plain facts; nobody mistakes land for water
 UNEXPLAINED = 0.1  # a state that trips less often than this hardly explains a trip that did happen
 SPREAD = 0.5  # natural-log spread of a predicted reading: the grid's half step and unit-to-unit differences
 CLAMP_OFFSET_MA = 0.8  # clamp meters: 5 % and 0.8 mA; limits are taken as two spreads
@@ -301,7 +301,8 @@ def _question_outcomes(found: Evidence, name: str) -> dict[str, tuple[float, ...
     choices = QUESTION[name].choices
     seen = {value: LOOKS_LIKE.get(value, {value: 1.0}) for value in rows if value}
     return _reported(
-        {choice: [seen[value].get(choice, 0.0) if value else 1 / len(choices) for value in rows] for choice in choices}, WRONG_FACT
+        {choice: [seen[value].get(choice, 0.0) if value else 1 / len(choices) for value in rows] for choice in choices},
+        WRONG_FACT[name],
     )
 
 

@@ -29,6 +29,7 @@ if TYPE_CHECKING:
 
 ROLES = ("feeder", "pedestal", "aboard")
 INFINITE_OHMS = 1e12
+STATED_ARRANGEMENT = 0.85  # an arrangement that trips by itself and was stated explains itself; other faults are rarer than that
 HULL = "hull_v"  # the reading of the own hull against the water
 
 
@@ -129,6 +130,8 @@ def cause_weights(predicted: Predictions) -> dict[str, float]:
     system = SYSTEMS[predicted.installation.of_kind("supply")[0].text("system")]
     present = dict.fromkeys(point.cause for point in predicted.points)
     weights = {cause: CAUSE[cause].prior_50 if system.region == "50" else CAUSE[cause].prior_60 for cause in present}
+    if "joined_inlets" in weights and any(len(part.parents) > 1 for part in predicted.installation.of_kind("panel")):
+        weights["joined_inlets"] = STATED_ARRANGEMENT  # the drawing says so, as it does of a Y
     arranged = sum(weights[cause] for cause in present if CAUSE[cause].kind == "arrangement")
     faults = sum(weights[cause] for cause in present if CAUSE[cause].kind == "fault")
     return {cause: weight if CAUSE[cause].kind == "arrangement" else weight / faults * (1 - arranged) for cause, weight in weights.items()}
@@ -212,6 +215,7 @@ class _Prepared:
                 ("live_sum_a", solve.probe_current(self.factors, live)),
             ]
             found.append(("ground_a", solve.probe_current(self.factors, ground)))
+        if self.context in contexts.ENERGISED:
             own = [node for hull, node in network.hulls if node in self.nodes and any(part.id == hull for part in mine)]
             found += [(HULL, solve.probe_voltage(self.factors, node, EARTH)) for node in own[:1]]
         if contexts.METER in present:

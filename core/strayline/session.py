@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from strayline import arrangements, contexts, likelihood
-from strayline.allowed import Situation, refusal, unwatched
+from strayline.allowed import DANGEROUS_HULL_VOLTS, Situation, refusal, unwatched
 from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKNOWN
@@ -40,7 +40,6 @@ DONE = "done"
 SETUP = ("role", "tools", "supply", "plug", "pedestal_device", "aboard_device")  # facts that choose tables or tests, not evidence
 LOOKS = ("afloat", "neighbour", "inverter")  # facts that are evidence about latents, asked when they tell something
 FIXED_WEIGHT = 0.05  # what is left of a cause's prior after it was fixed
-DANGEROUS_HULL_VOLTS = 50.0  # conventional touch-voltage limit, IEC 60364-4-41
 DANGER_SHARE = 0.10
 HOMEMADE_WEIGHT = {"ground_neutral_exchanged": 6.0, "line_ground_exchanged": 40.0, "open_ground_with_leak": 4.0}
 FREE_MINUTES = 0.3
