@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Any
 from strayline import __version__, casefile, report
 from strayline.errors import CaseError, StraylineError
 from strayline.netlist import netlist
-from strayline.protocol import PROTOCOL, handle
+from strayline.protocol import MAX_VALUE, PROTOCOL, handle
 from strayline.residuals import residuals, stated_network
 
 if TYPE_CHECKING:
@@ -73,7 +73,7 @@ def _ask(arguments: argparse.Namespace) -> None:
 def _typed(form: dict[str, Any]) -> str | None:
     """What the person typed: the number of a choice, or the value itself; None at the end of input."""
     try:
-        typed = input("> ").strip()
+        typed = input("> ").strip()[:MAX_VALUE]
     except EOFError:
         return None
     choices = form["choices"]
@@ -120,6 +120,6 @@ def main(arguments: Sequence[str] | None = None) -> int:
     except StraylineError as error:
         print(error.message.replace("\n", " "), file=sys.stderr)
         return BAD_FILE
-    except BrokenPipeError:
-        return 0
+    except (BrokenPipeError, KeyboardInterrupt):
+        return 0  # whoever reads or types has had enough
     return 0

@@ -116,7 +116,9 @@ def screen_text(screen: Screen) -> str:
     if form:
         if form["problem"]:
             lines.append(f"  ! {form['problem']}")
-        lines += ["", form["legend"], *(f"  {number}. {choice['label']}" for number, choice in enumerate(form["choices"], 1))]
-        if form["unit"]:
-            lines.append(f"  or a number in {form['unit']}")
+        lines += ["", form["legend"]]
+        if form["input"] == "number":  # a bare number is the reading, so the other answers have names here
+            lines += [f"  a number in {form['unit']}", *(f"  {choice['value']} - {choice['label']}" for choice in form["choices"])]
+        else:
+            lines += [f"  {number}. {choice['label']}" for number, choice in enumerate(form["choices"], 1)]
     return "\n".join(lines)
