@@ -24,7 +24,8 @@ GIVEN = (
     ("pedestal_device", "device_30"), ("aboard_device", "device_30"), ("opened", "pedestal"), ("when", "any_load"),
 )  # fmt: skip
 REPORTS = (
-    ("inverter", "no"), ("look_over", "clean"), ("branches_off", "holds"), ("test_load", "trips"), ("bond_ohms", "0.3"), ("afloat", "ashore"),
+    ("inverter", "no"), ("look_over", "clean"), ("branches_off", "holds"), ("test_load", "trips"), ("bond_ohms", "0.3"),
+    ("afloat", "ashore"),
 )  # fmt: skip
 
 

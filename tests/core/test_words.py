@@ -2,39 +2,22 @@
 
 from __future__ import annotations
 
-import importlib.util
 import re
 import string
-import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 import pytest
 
+import sentence_rules as rules
 from strayline.catalogue.causes import CAUSES
 from strayline.catalogue.en import WORDS
 from strayline.catalogue.questions import CLEAR, GATE, GATE_SIGNS, QUESTIONS
 from strayline.catalogue.tests import ROLES, TESTS, TOOLS
 
 if TYPE_CHECKING:
-    from types import ModuleType
-
     from strayline.catalogue.causes import Cause
     from strayline.catalogue.tests import Test
-
-
-def _beside(name: str) -> ModuleType:
-    """A module of this folder: importlib mode keeps the tests' folders off the import path."""
-    spec = importlib.util.spec_from_file_location(name, Path(__file__).with_name(f"{name}.py"))
-    assert spec is not None
-    assert spec.loader is not None
-    module = importlib.util.module_from_spec(spec)
-    sys.modules[name] = module  # a dataclass looks its own module up there
-    spec.loader.exec_module(module)
-    return module
-
-
-rules = _beside("sentence_rules")
 
 LINES = {"steps", "cautions", "orders", "lead", "lines", "tonight", "remedy", "connect", "disconnect"}
 FIELDS = {
@@ -83,7 +66,16 @@ def _reader(key: str) -> str:
 
 
 def _expected() -> set[str]:
-    keys = {"question.unknown", "test.ask", "test.cannot", "test.over_range", "kind.fault", "kind.arrangement", "order.connect", "order.disconnect"}
+    keys = {
+        "question.unknown",
+        "test.ask",
+        "test.cannot",
+        "test.over_range",
+        "kind.fault",
+        "kind.arrangement",
+        "order.connect",
+        "order.disconnect",
+    }
     keys |= {f"question.fixed.{part}" for part in ("text", "why", "done")}  # asked of a cause, so it stands in no table
     keys |= {"gate.title", "gate.lead", "gate.none", "gate.unknown", *(f"gate.{sign}" for sign in GATE_SIGNS)}
     keys |= {"stop.title", "stop.lead", "tonight.title", "tonight.lead", "tonight.orders", "cautions.title", "cautions.lines"}
