@@ -1,8 +1,8 @@
 """Which tests may be proposed to this person, here and now. These rules outrank every gain in information.
 
-A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because an end is burnt, because a plug
-would be left with live blades or the boat's metal may be live, or because it would energise again what has tripped: every time power
-goes on, something has been taken away first.
+A test is refused for the role, for the tool, for a fact it needs, because nothing would watch it, because a wet end would be left live,
+because a conductor of the cord was found bad, because a plug would be left with live blades or the boat's metal may be live, or because
+it would energise again what has tripped: every time power goes on, something has been taken away first.
 """
 
 from __future__ import annotations
@@ -39,7 +39,7 @@ class Situation:
     """What the rules look at: stated facts, hypotheses with their weights, and what tests have shown.
 
     reports -- the tests answered in this epoch (id, value) in order
-    last    -- the last answer to each test, also from before a fix: a dead device or a burnt end stays one until it is looked at again
+    last    -- the last answer to each test, also from before a fix: a dead device or a wet end stays one until it is looked at again
     """
 
     facts: Mapping[str, str]
@@ -52,7 +52,7 @@ class Situation:
 def refusal(test: Test, situation: Situation) -> str | None:
     """Why a test may not be proposed, None when it may.
 
-    "role", "tool", "need", "unwatched", "damaged", "tripped", "live_blades" or "live_hull".
+    "role", "tool", "need", "unwatched", "wet", "bad_cord", "tripped", "live_blades" or "live_hull".
     """
     facts = situation.facts
     role, tool = facts.get("role", UNKNOWN), facts.get("tools", UNKNOWN)
@@ -66,8 +66,10 @@ def refusal(test: Test, situation: Situation) -> str | None:
         return None
     if test.id != "test_button" and unwatched(facts, situation.last):
         return "unwatched"
-    if damaged(test, situation.last):
-        return "damaged"
+    if test.context == "cord_alone" and situation.last.get("look_over") == "wet":
+        return "wet"  # only a dry and whole cord may lie with its far end live and free
+    if situation.last.get("adapter_continuity") in ("exchanged", "ground_open") and test.context != "pedestal_alone":
+        return "bad_cord"  # measured in the hand: it powers nothing, until another is measured
     if RUNGS.get(test.context, 0) >= lowest_tripped(situation.reports):
         return "tripped"
     if any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in situation.evidence.predicted):
@@ -84,12 +86,6 @@ def live_hull(evidence: Evidence, weights: Sequence[float], context: str) -> flo
 def unwatched(facts: Mapping[str, str], last: Mapping[str, str]) -> bool:
     """Whether the outlet is known to have no ground-fault device that works: power from it proves nothing and protects nobody."""
     return facts.get("pedestal_device") == "none" or last.get("test_button") == "stays"
-
-
-def damaged(test: Test, last: Mapping[str, str]) -> bool:
-    """Whether an end was seen burnt, which carries no current again, or wet, when the test would leave the cord's far end live and free."""
-    seen = last.get("look_over")
-    return seen == "burnt" or (seen == "wet" and test.context == "cord_alone")
 
 
 def lowest_tripped(reports: Sequence[tuple[str, str]]) -> int:

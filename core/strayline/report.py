@@ -107,11 +107,11 @@ def screen_text(screen: Screen) -> str:
     lines += [f"  ! {line}" for line in screen["cautions"]]
     lines += [f"  {number}. {line}" for number, line in enumerate(screen["steps"], 1)]
     lines += [f"  {fact['label']}: {fact['text']}" for fact in screen["facts"]]
+    if screen["tonight"] and screen["kind"] in ("outcome", "stop"):
+        lines += ["Tonight:", *(f"  - {line}" for line in screen["tonight"])]
     for row in screen["ranking"]:
         lines.append(f"  {row['percent']:>6}  {row['title']}")
         lines += [f"            {line}" for line in (*row["numbers"], *row["for"], *row["against"])]
-    if screen["tonight"] and screen["kind"] in ("outcome", "stop"):
-        lines += ["Tonight:", *(f"  - {line}" for line in screen["tonight"])]
     form = screen["form"]
     if form:
         if form["problem"]:

@@ -163,14 +163,18 @@ def _over_range(answer: Answer) -> bool:
 
 
 def _halted(ordered: Sequence[Answer]) -> str | None:
-    """The sign that stops everything: the last gate answer, or a line before power that was not clear. "I don't know" counts as yes."""
+    """The sign that stops everything: the last gate answer, a line before power that was not clear, or an end found burnt.
+
+    "I don't know" counts as yes, at the gate and before power. What is found burnt is the sign of a burnt plug, seen later.
+    """
     gate = [answer.value for answer in ordered if answer.question == GATE.id]
     if gate and gate[-1] != "none":
         return gate[-1] if gate[-1] in GATE.choices else UNKNOWN
     for answer in ordered:
         if answer.question == CLEAR.id and answer.value != "clear":
             return "not_clear"
-    return None
+    looked = [answer.value for answer in ordered if answer.question == "look_over"]
+    return "hot_plug" if looked[-1:] == ["burnt"] else None
 
 
 def _facts(ordered: Sequence[Answer]) -> dict[str, str]:
@@ -263,6 +267,8 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
         misfits=misfits, tests_done=physical, allowed=tuple(test.id for test in tests), unwatched=unwatched(facts, last),
     )  # fmt: skip
     dangerous = _dangerous(evidence, hypotheses, weights)
+    if ("adapter_continuity", "ground_open") in reports:  # measured in the hand: nothing else need be likely
+        dangerous = tuple(dict.fromkeys((*dangerous, "open_ground_with_leak")))
     if dangerous:
         return _with(session, verdict="danger", group=dangerous)
     why = stop(hypotheses, weights, candidates, physical, len(misfits))

@@ -156,6 +156,13 @@ def test_power_is_not_restored_when_it_is_not_clear(value: str) -> None:
     assert _line_before(asked, "clear").test == asked.test
 
 
+def test_what_is_found_burnt_stops_like_the_sign_at_the_gate() -> None:
+    """An end that is found burnt is the gate's sign of a burnt plug, seen later: it stops, until it has been looked at again."""
+    assert after(("look_over", "burnt")).halted == "hot_plug"
+    assert after(("look_over", "burnt"), *REPORTS[2:]).halted == "hot_plug"
+    assert after(("look_over", "burnt"), ("look_over", "clean")).halted is None
+
+
 def test_an_old_line_before_power_does_not_count() -> None:
     """A line that was answered "clear" is asked again once anything else was said, also after a fix."""
     cleared = _line_before(after(("inverter", "no")), "clear")
