@@ -7,7 +7,8 @@ import pytest
 from contract_examples import EXAMPLES, SCREENS, ending, texts
 
 ENDINGS = ("named", "group", "nothing_now", "unknown", "danger", "stop")
-JOURNEYS = {ending(screen): name for name, screen in reversed(SCREENS.items()) if ending(screen)}
+SAID_LATER = ("stop_late", "stop_found_burnt")  # what ends these is said out of the order in which the flow asks
+JOURNEYS = {ending(screen): name for name, screen in reversed(SCREENS.items()) if ending(screen) and name not in SAID_LATER}
 
 
 def test_the_contract_holds_an_example_of_every_ending():
