@@ -72,6 +72,7 @@ export function stoppedBy(held) {
   const stop = held.answers.find(
     ({ question, value }) => (question === "gate" && value !== "none") || (question === "clear" && value !== "clear"),
   );
+  if (stop?.question === "clear") return "not_clear"; // "I don't know" counts as no, before power as at the gate
   return stop?.value ?? "";
 }
 
