@@ -282,9 +282,8 @@ def test_no_test_leaves_live_blades() -> None:
             live.add(test)
     assert live >= {"appliance_unplugged", "one_at_a_time"}
     answers = [Answer("gate", None, "none", 0)]
-    for seq, (question, value) in enumerate(
-        [("role", "technician"), ("tools", "insulation"), ("opened", "pedestal"), ("when", "any_load"), ("pedestal_alone", "holds")], 1
-    ):
+    said = {"role": "technician", "tools": "insulation", "opened": "pedestal", "when": "any_load", "afloat": "afloat"}
+    for seq, (question, value) in enumerate({**said, "pedestal_alone": "holds"}.items(), 1):
         answers.append(Answer(question, None, value, seq))
     allowed = set(replay(answers, installation).allowed)
     assert allowed

@@ -22,10 +22,11 @@ if TYPE_CHECKING:
 GIVEN = (
     ("gate", "none"), ("role", "technician"), ("tools", "insulation"), ("supply", "split_120_240"), ("plug", "one_cord"),
     ("pedestal_device", "device_30"), ("aboard_device", "device_30"), ("opened", "pedestal"), ("when", "any_load"),
+    ("afloat", "afloat"),
 )  # fmt: skip
 REPORTS = (
     ("inverter", "no"), ("look_over", "clean"), ("branches_off", "holds"), ("test_load", "trips"), ("bond_ohms", "0.3"),
-    ("afloat", "ashore"),
+    ("neighbour", "no"),
 )  # fmt: skip
 
 
@@ -105,14 +106,14 @@ def test_not_knowing_changes_nothing(asked: str, value: str) -> None:
     assert after(*REPORTS, (asked, value)).weights == after(*REPORTS).weights
 
 
-@pytest.mark.parametrize("asked", ["opened", "when"])
+@pytest.mark.parametrize("asked", ["opened", "when", "afloat"])
 def test_not_knowing_what_happened_changes_nothing(asked: str) -> None:
-    """To what opened or when "I don't know" leaves the prior of the set-up times what else was said."""
+    """To what opened, when, or where the boat lies, "I don't know" leaves the prior of the set-up times what else was said."""
     known = [one.answer.question for one in after(**{asked: UNKNOWN}).observations]
-    assert known == [other for other in ("opened", "when") if other != asked]
-    both = after(opened=UNKNOWN, when=UNKNOWN)
-    assert both.hypotheses is not None
-    assert both.weights == pytest.approx(both.hypotheses.prior, rel=1e-12)
+    assert known == [other for other in ("opened", "when", "afloat") if other != asked]
+    nothing = after(opened=UNKNOWN, when=UNKNOWN, afloat=UNKNOWN)
+    assert nothing.hypotheses is not None
+    assert nothing.weights == pytest.approx(nothing.hypotheses.prior, rel=1e-12)
 
 
 @pytest.mark.parametrize("asked", [question for question in SETUP if question != "role"])
@@ -231,9 +232,9 @@ def test_a_fix_opens_an_epoch() -> None:
     """After a fix the old reports count no more, what the boat is still does, and the fixed cause keeps a twentieth of its prior."""
     before, later = after(*REPORTS), fixed(after(*REPORTS), "panel_bond")
     assert later.verdict != before.verdict or later.test != before.test
-    assert {one.answer.question for one in later.observations} == {"inverter", "afloat"}
+    assert {one.answer.question for one in later.observations} == {"inverter", "neighbour", "afloat"}
     assert later.tests_done == 0
-    plain = marginal(after(("inverter", "no"), ("afloat", "ashore"), opened=UNKNOWN, when=UNKNOWN))
+    plain = marginal(after(("inverter", "no"), ("neighbour", "no"), opened=UNKNOWN, when=UNKNOWN))
     odds = marginal(later)["panel_bond"] / marginal(later)["wet_cord"]
     assert odds == pytest.approx(FIXED_WEIGHT * plain["panel_bond"] / plain["wet_cord"], rel=1e-9)
 
@@ -324,5 +325,5 @@ def test_a_verdict_of_danger_never_names_something_harmless_alone(walks: Sequenc
 
 def test_a_fact_that_is_rare_is_no_contradiction() -> None:
     """A boat on land is rare and no misfit: only what tests and history say can contradict a cause."""
-    for session in (after(("afloat", "ashore")), after(*REPORTS)):
+    for session in (after(afloat="ashore"), after(*REPORTS), after(*REPORTS, afloat="ashore")):
         assert not {session.observations[index].answer.question for index in session.misfits} & set(LOOKS)
