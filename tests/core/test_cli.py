@@ -32,12 +32,25 @@ def core(*arguments: object, typed: str | bytes = b"") -> subprocess.CompletedPr
     return subprocess.CompletedProcess(done.args, done.returncode, done.stdout.decode(), done.stderr.decode())
 
 
-def numbers(*choices: int) -> str:
-    """Lines that pick choices by their number."""
-    return "".join(f"{choice}\n" for choice in choices)
+SET_UP = {
+    "gate": "none", "role": "user", "tools": "none", "supply": "split_120_240", "plug": "one_cord", "pedestal_device": "device_30",
+    "aboard_device": "device_30", "opened": "pedestal", "afloat": "afloat",
+}  # fmt: skip
 
 
-SET_UP = numbers(1, 1, 1, 1, 1, 1, 1)  # no sign, owner, no tools, 120/240 V, one cord, 30 mA on the post, 30 mA aboard
+def lines_of(**said: str) -> str:
+    """What a person types who says these things: the number of each choice, for as long as what is asked is among them."""
+    rows: list[dict[str, object]] = []
+    lines = ""
+    said = {"clear": "clear", **said}
+    while True:
+        request = {"id": "cli", "protocol": PROTOCOL, "language": "en", "units": "si", "view": "flow", "answers": rows}
+        form = json.loads(handle(json.dumps(request)))["screen"]["form"]
+        if form is None or form["question"] not in said or form["input"] == "number":
+            return lines
+        value = said[form["question"]]
+        lines += f"{[choice['value'] for choice in form['choices']].index(value) + 1}\n"
+        rows.append({"question": form["question"], "subject": form["subject"], "value": value, "seq": len(rows), "at": ""})
 
 
 @pytest.mark.parametrize("arguments", [(), ("--help",), ("ask", "--help"), ("residuals", "--help"), ("--version",)])
@@ -124,8 +137,7 @@ def test_ask_as_json_is_the_reply_of_the_contract(file: Path | None) -> None:
 
 def test_ask_leads_to_an_end_by_typing() -> None:
     """By typing numbers alone the flow goes from the gate to a named cause, who may fix it, and what to do tonight."""
-    wet_cord = SET_UP + numbers(1, 7, 1, 2, 1, 1)  # the post opened, in rain; clear, the cord alone trips; clear, the post alone holds
-    done = core("ask", typed=wet_cord)
+    done = core("ask", typed=lines_of(**SET_UP, when="wet", cord_alone="trips", pedestal_alone="holds"))
     assert done.returncode == 0, done.stderr
     assert done.stderr == ""
     assert "Most likely: The shore cord is wet or damaged" in done.stdout
@@ -134,7 +146,7 @@ def test_ask_leads_to_an_end_by_typing() -> None:
 
 def test_ask_stops_at_a_sign() -> None:
     """A sign typed at the gate ends with the orders for it; nothing else is asked."""
-    done = core("ask", typed=numbers(2))
+    done = core("ask", typed="2\n")
     assert done.returncode == 0
     assert "Do not jump in" in done.stdout
     assert done.stdout.count("> ") == 1
@@ -153,19 +165,19 @@ def test_ask_asks_again_what_it_cannot_take() -> None:
 
 def test_ask_takes_a_reading_and_never_mistakes_it_for_a_choice() -> None:
     """Where a number is asked for, a typed number is the reading, and the other answers are typed as words."""
-    technician = numbers(1, 3, 3, 1, 1, 1, 1, 1, 4, 1)  # a clamp at hand; the post opened when one load came on; clear
+    technician = lines_of(**SET_UP | {"role": "technician", "tools": "clamp", "when": "one_load"})
     asked = core("ask", typed=technician).stdout
     card = asked[asked.rindex("What does the clamp read") :]
     assert "a number in mA" in card
     assert "unknown - I don't know" in card
     assert "cannot - " in card
     assert not re.search(r"^\s*\d+\. ", card, re.MULTILINE)
-    assert "Write one number" in core("ask", typed=technician + "a lot\n").stdout
+    assert "one number" in core("ask", typed=technician + "a lot\n").stdout
     assert "“Clamp around the whole cord” – “2 mA”" in core("ask", typed=technician + "2\n").stdout
 
 
 def test_ask_ends_where_the_typing_ends() -> None:
     """When the input ends in the middle, so does the command, with nothing wrong."""
     for length in range(3):
-        done = core("ask", typed=numbers(*[1] * length))
+        done = core("ask", typed="1\n" * length)
         assert (done.returncode, done.stderr) == (0, "")
