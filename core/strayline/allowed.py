@@ -27,10 +27,10 @@ LIVE_HULL_SHARE = 0.02  # a test is not worth a greater chance than this of live
 INVERTER_SHARE = 0.2  # below this an inverter aboard is not worth a test of its own
 
 # How much is energised in each context, from the bare outlet to the boat as it was found. The states on one rung hold the same
-# parts or parts of each other; a Y taken out and another pedestal are other arrangements, and stand on no rung.
+# parts or parts of each other; at another pedestal it is the same boat. A Y taken out is another arrangement, and stands on no rung.
 RUNGS = {
     "pedestal_alone": 1, "cord_alone": 2, "main_off": 3, "branches_off": 4, "light_load": 5, "test_load": 5, "inverter_settled": 5,
-    "one_load": 5, "suspect_out": 6, "as_found": 7,
+    "one_load": 5, "other_pedestal": 5, "suspect_out": 6, "as_found": 7,
 }  # fmt: skip
 
 
@@ -70,7 +70,7 @@ def refusal(test: Test, situation: Situation) -> str | None:
         return "wet"  # only a dry and whole cord may lie with its far end live and free
     if situation.last.get("adapter_continuity") in ("exchanged", "ground_open") and test.context != "pedestal_alone":
         return "bad_cord"  # measured in the hand: it powers nothing, until another is measured
-    if RUNGS.get(test.context, 0) >= lowest_tripped(situation.reports):
+    if RUNGS.get(test.context, 0) >= lowest_tripped(situation.reports) and not _leaves_a_bad_post(test, situation):
         return "tripped"
     if any(one.blade_volts(test.context) > LIVE_BLADE_VOLTS for one in situation.evidence.predicted):
         return "live_blades"
@@ -92,6 +92,11 @@ def lowest_tripped(reports: Sequence[tuple[str, str]]) -> int:
     """The lowest rung that tripped. The boat as found did, or nobody would ask."""
     rungs = [RUNGS[TEST[test].context] for test, value in reports if value in TRIPPED and TEST[test].context in RUNGS]
     return min((*rungs, RUNGS["as_found"]))
+
+
+def _leaves_a_bad_post(test: Test, situation: Situation) -> bool:
+    """Whether the test takes the boat away from an outlet that trips with nothing in it: what tripped was not the boat."""
+    return test.context == "other_pedestal" and ("pedestal_alone", "trips") in situation.reports
 
 
 def _holds(need: str, situation: Situation) -> bool:

@@ -43,11 +43,11 @@ POWERED: dict[str, frozenset[str]] = {
     "light_load": _BOAT | {"any", "light"},
     "appliance_unplugged": _BOAT | {"any", "light", "heavy"},
     "without_y": frozenset({"post", "straight adapter"}),
-    "other_pedestal": frozenset({"other post"}),
+    "other_pedestal": frozenset({"other post", "cord", "inlet", "panel", "light"}),
 }
 AS_IT_WAS = _BOAT | {"any", "light", "heavy", "suspect"}
 DARK = frozenset(test.id for test in TESTS) - set(POWERED)
-BOAT_AT_OWN_POST = frozenset(test for test, live in POWERED.items() if "cord" in live)
+BOAT_AT_OWN_POST = frozenset(test for test, live in POWERED.items() if {"post", "cord"} <= live)
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,6 +129,11 @@ FORBIDDEN: tuple[Forbidden, ...] = (
         when=lambda proposal: proposal.last("look_over") == "burnt",
     ),
     Forbidden(
+        "a cord with a conductor found bad powers nothing",
+        BOAT_AT_OWN_POST | {"without_y", "other_pedestal"},
+        when=lambda proposal: proposal.last("adapter_continuity") in ("exchanged", "ground_open"),
+    ),
+    Forbidden(
         "an outlet whose device TEST does not open is not used",
         BOAT_AT_OWN_POST | {"pedestal_alone", "without_y"},
         when=lambda proposal: proposal.last("test_button") == "stays",
@@ -142,6 +147,14 @@ FORBIDDEN: tuple[Forbidden, ...] = (
         "what tripped is not turned on again whole",
         frozenset(POWERED),
         when=lambda proposal: any(live <= POWERED[proposal.test] for live in tripped_before(proposal)),
+    ),
+    Forbidden(
+        "a boat that tripped is not carried to another post, unless its own post trips with nothing in it",
+        frozenset({"other_pedestal"}),
+        when=lambda proposal: (
+            ("pedestal_alone", "trips") not in proposal.since_fix
+            and any(live - {"post"} <= POWERED["other_pedestal"] for live in tripped_before(proposal))
+        ),
     ),
 )
 
@@ -207,7 +220,11 @@ def test_the_list_catches_what_it_forbids(row: Forbidden) -> None:
         for role in ("user", "technician")
         for plug in ("one_cord", "two_cords", "combining_y", "homemade")
         for device in ("device_30", "none")
-        for reports in ((), (("look_over", "burnt"),), (("test_button", "stays"),), (("pedestal_alone", "trips"),))
+        for reports in (
+            *((one,) for one in (("look_over", "burnt"), ("test_button", "stays"), ("pedestal_alone", "trips"), ("main_off", "trips"))),
+            (("adapter_continuity", "exchanged"),),
+            (),
+        )
     ]
     assert any(row.meets(proposal) for proposal in bad)
     assert not all(row.meets(proposal) for proposal in bad)
