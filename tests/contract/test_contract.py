@@ -6,6 +6,7 @@ The second half does not depend on what the core says: shapes, and rules that an
 from __future__ import annotations
 
 import json
+import re
 import runpy
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -136,6 +137,22 @@ def test_an_error_is_a_code_a_sentence_and_details(name: str) -> None:
 def test_a_screen_has_every_key_and_every_leaf_is_text(name: str) -> None:
     """Every key of the contract is there, none besides, and every leaf is text; a form, a verdict and a subject may be null."""
     assert list(departures(SCREENS[name], SHAPE)) == []
+
+
+def leaves(part: object) -> Iterator[str]:
+    """Every text of a reply."""
+    if isinstance(part, str):
+        yield part
+    elif isinstance(part, list | dict):
+        for item in part.values() if isinstance(part, dict) else part:
+            yield from leaves(item)
+
+
+@pytest.mark.parametrize("name", PAIRS)
+def test_what_is_put_together_reads_like_a_sentence(name: str) -> None:
+    """No text has an unfilled field, two spaces, two stops, or a space at its end: the joints do not show."""
+    reply = {key: part for key, part in PAIRS[name]["reply"].items() if key != "id"}
+    assert [text for text in leaves(reply) if re.search(r"[{}]|  |[.?!][.;,]|^\s|\s$", text)] == []
 
 
 @each_screen

@@ -7,6 +7,7 @@ the circuit.
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
@@ -14,6 +15,7 @@ import numpy as np
 import pytest
 
 from strayline import arrangements, contexts
+from strayline.catalogue.en import WORDS
 from strayline.catalogue.questions import CLEAR
 from strayline.catalogue.tests import TEST, TESTS
 from strayline.parts import read
@@ -240,6 +242,14 @@ def test_power_goes_on_only_when_the_last_word_was_that_all_is_clear(walks: Sequ
     refused = [step for step in walks if any(answer.question == CLEAR.id and answer.value != "clear" for answer in step.answers)]
     assert refused
     assert {step.halted for step in refused} == {"not_clear"}
+
+
+@pytest.mark.parametrize("test", ["cord_alone", "without_y", "other_pedestal"])
+def test_where_one_plug_may_be_in_one_breaker_goes_on(test: str) -> None:
+    """The card of a test that only one plug may take part in never tells to turn on two breakers, not even if there are two."""
+    steps = " ".join(WORDS[f"test.{test}.steps"])
+    assert re.search(r"turn on the breaker on the (?:new )?dock post", steps, re.IGNORECASE)
+    assert not re.search(r"turn on both", steps, re.IGNORECASE)
 
 
 # --- live blades, from the network ---------------------------------------------------------------------------------
