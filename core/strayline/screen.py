@@ -28,6 +28,7 @@ LANGUAGES = ("en",)
 SHOWN_CAUSES = 6
 SHOWN_SHARE = 0.01
 TONIGHT_SHARE = 0.01  # tonight's advice is the worst case over every cause above this
+REPAIRERS = ("electrician", "technician", "user")  # the strictest first
 TELLING_RATIO = 1.25  # an observation that changes the odds by less says little
 
 
@@ -145,7 +146,7 @@ def _form(
     problem, value = "", ""
     found = session.problem
     if found and found.answer.question == question:
-        problem, value = found.fields.get("sentence") or speech.say(found.key), found.answer.value[:200]
+        problem, value = speech.say(found.key, **found.fields), found.answer.value[:200]
     return {
         "question": question, "subject": subject, "input": kind, "legend": legend, "choices": choices, "unit": unit, "value": value,
         "problem": problem,
@@ -164,7 +165,7 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
         lead = [speech.say("verdict.unwatched.title") + ".", *speech.lines("verdict.unwatched.lead"), *lead]
     if session.misfits:
         lead.append(speech.say("progress.misfit", answers=_misfits(session, speech)))
-    fixers = list(dict.fromkeys(CAUSE[cause].repair for cause in causes))
+    fixers = sorted({CAUSE[cause].repair for cause in causes}, key=REPAIRERS.index)
     title = speech.say(f"verdict.{session.verdict}.title", **fields)
     verdict = {
         "stop": session.verdict,
@@ -175,7 +176,7 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
             for cause in causes
             for line in (*([speech.say(f"cause.{cause}.title")] if len(causes) > 1 else []), *speech.lines(f"cause.{cause}.lead"))
         ],
-        "repair": "; ".join(speech.say(f"repair.{role}") for role in fixers) or speech.say("repair.technician"),
+        "repair": " ".join(speech.say(f"repair.{role}") for role in fixers) or speech.say("repair.technician"),
         "remedy": list(
             dict.fromkeys(
                 line for cause in causes for line in (*speech.lines(f"cause.{cause}.remedy"), *speech.lines(f"cause.{cause}.confirm"))

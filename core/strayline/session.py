@@ -66,7 +66,8 @@ class Problem:
 
     def error(self) -> CaseError:
         """The same as a file's error."""
-        return CaseError(f"answers.{self.answer.question}", self.fields.get("sentence") or "no such answer", self.answer.value)
+        rule = "must be a number in {unit} from {low} to {high}".format(**self.fields) if self.fields else "no such answer"
+        return CaseError(f"answers.{self.answer.question}", rule, self.answer.value)
 
 
 @dataclass(frozen=True, slots=True)
@@ -150,7 +151,8 @@ def _problem(answer: Answer, facts: Mapping[str, str]) -> Problem | None:
         try:
             parse_quantity(answer.value, test.unit, *LIMITS[test.unit])
         except QuantityError as error:
-            return Problem(answer, "", {"sentence": error.message})
+            fields = {"unit": test.unit, "low": f"{LIMITS[test.unit][0]:g}", "high": f"{LIMITS[test.unit][1]:g}"}
+            return Problem(answer, f"problem.{error.problem}", fields)
         return None
     choices = test.outcomes if test is not None else choices_of(answer.question, facts)
     if not answer.value.strip():

@@ -14,11 +14,11 @@ _POST_OFF = "Turn off the breaker on the dock post (pedestal). With two plugs in
 _DARK = (_LOADS_OFF, _MAIN_OFF, _POST_OFF)
 _POST_OUT = "Pull every plug of yours out of the dock post. Touch none of its pins."
 _UNPLUG = (_POST_OUT, "Then take the cord off the boat and cover the boat's inlet.")
-_PLUG = ("Connect the boat end of the cord first.", "Then push the plug into the dock post.")
 _POST_ON = "Turn on the breaker on the dock post, once."
+_POSTS_ON = f"{_POST_ON} With two plugs in use, turn on both, one after the other."
 _MAIN_ON = "Turn on the main switch aboard."
 _MAIN_STAYS_OFF = "Leave the main switch aboard off."
-_CORD_IN = "Check that the cord is in at both ends. If it is out, connect the boat end first and the dock post last."
+_CORD_IN = "Check that every cord is in at both ends. If one is out, connect the boat end first and the dock post last."
 _WAIT_MINUTE = "Wait one minute. Note whether the breaker holds or trips."
 _NOTE = "Note whether the breaker holds or trips."
 _DONE = "To end: loads off, main off, then turn off the breaker on the dock post."
@@ -40,7 +40,8 @@ _ONCE = "Turn it on once. If it trips, leave it off and enter what you saw."
 _NEVER_AFTER = "Never do this after a bang, a flash or a smell, and never with thunder about."
 _BOTH = "With two dock breakers in use, turn the other one off at once when one opens."
 _POLARITY = "If a polarity light comes on, turn the dock breaker off at once."
-_LIVE = (_CLEAR, _ONCE, _NEVER_AFTER, _BOTH)
+_DOCK_DARK = "If the whole dock is dark, wait until the marina has it on again."
+_LIVE = (_CLEAR, _ONCE, _NEVER_AFTER, _BOTH, _DOCK_DARK)
 _ABOARD = (*_LIVE, _POLARITY)
 _CLAMP_SMALL = "Use a clamp that shows milliamps. An ordinary one cannot see 30 mA."
 _CLAMP_PICKUP = "A heavy load adds a few milliamps of false reading to the clamp."
@@ -227,8 +228,6 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "A tool does not make you a technician. Do only what your training covers.",
         "Rules differ from place to place. Ask the marina before you test.",
     ),
-    "order.connect": (*_DARK, *_PLUG, _POST_ON, _MAIN_ON, "If a polarity light comes on, turn everything off again at once."),
-    "order.disconnect": (*_DARK, *_UNPLUG),
     # --- questions ---
     "question.unknown": "I don't know",
     "question.gate.text": "Is any of these true right now?",
@@ -319,8 +318,6 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "repair.user": "You can do this: leave the part out or replace it. No wiring work.",
     "repair.technician": "A marine electrical technician must repair this aboard.",
     "repair.electrician": "The marina's licensed electrician must repair this ashore.",
-    "kind.fault": "A fault",
-    "kind.arrangement": "The way it is plugged in",
     # --- causes ---
     "cause.appliance_leak.title": "One appliance leaks",
     "cause.appliance_leak.lead": (
@@ -658,7 +655,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "test.test_button.steps": (
         *_DARK,
         *_UNPLUG,
-        _POST_ON,
+        _POSTS_ON,
         "Press TEST once.",
         "Note whether the breaker opens.",
         "To end: turn off the breaker on the dock post.",
@@ -668,7 +665,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "test.test_button.stays": "It stays on",
     "test.test_button.why": "A dead device holds because nothing is watching. “It holds” counts only once TEST has opened it.",
     "test.pedestal_alone.title": "Dock breaker on, nothing plugged in",
-    "test.pedestal_alone.steps": (*_DARK, *_UNPLUG, _POST_ON, _WAIT_MINUTE, "To end: turn off the breaker on the dock post."),
+    "test.pedestal_alone.steps": (*_DARK, *_UNPLUG, _POSTS_ON, _WAIT_MINUTE, "To end: turn off the breaker on the dock post."),
     "test.pedestal_alone.cautions": _LIVE,
     "test.pedestal_alone.holds": _HOLDS,
     "test.pedestal_alone.trips": _TRIPS,
@@ -694,13 +691,13 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "test.cord_alone.trips": _TRIPS,
     "test.cord_alone.why": "It tells a bad cord from a fault on the boat.",
     "test.main_off.title": "Cord to the boat, main switch off",
-    "test.main_off.steps": (*_DARK, _CORD_IN, _MAIN_STAYS_OFF, _POST_ON, _WAIT_MINUTE, "To end: turn off the breaker on the dock post."),
+    "test.main_off.steps": (*_DARK, _CORD_IN, _MAIN_STAYS_OFF, _POSTS_ON, _WAIT_MINUTE, "To end: turn off the breaker on the dock post."),
     "test.main_off.cautions": _LIVE,
     "test.main_off.holds": _HOLDS,
     "test.main_off.trips": _TRIPS,
     "test.main_off.why": "It splits the path: cord and inlet on one side, the boat's wiring on the other.",
     "test.branches_off.title": "Main switch on, all branch breakers off",
-    "test.branches_off.steps": (*_DARK, _CORD_IN, _BRANCHES_OFF, _POST_ON, _MAIN_ON, _WAIT_MINUTE, _DONE),
+    "test.branches_off.steps": (*_DARK, _CORD_IN, _BRANCHES_OFF, _POSTS_ON, _MAIN_ON, _WAIT_MINUTE, _DONE),
     "test.branches_off.cautions": _ABOARD,
     "test.branches_off.holds": _HOLDS,
     "test.branches_off.trips": _TRIPS,
@@ -710,7 +707,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         *_DARK,
         _CORD_IN,
         _BRANCHES_OFF,
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on one branch breaker and its load.",
         "Wait until it really runs: hot, cold, or humming. Ask yourself: did it run? If not, it does not count.",
@@ -735,7 +732,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "Turn off the branch breaker of the appliance you suspect. Often it is the water heater.",
         "Pull that appliance's own plug. If it has no plug, choose “I can't do this one”.",
         _CORD_IN,
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on the loads that ran when it tripped, but not that appliance. Let them run for a minute.",
         _NOTE,
@@ -751,7 +748,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         _BRANCHES_OFF,
         "Find a plain lamp or heater with a plug, of at most 1500 W. Plug it into a dry cabin socket.",
         _CORD_IN,
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on only the branch breaker of that socket, and the lamp or heater. Check that it runs.",
         _WAIT_MINUTE,
@@ -767,7 +764,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         _CORD_IN,
         _BRANCHES_OFF,
         "Turn the inverter/charger back on, with all loads off.",
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Wait one minute, until the inverter/charger shows that it has taken shore power.",
         "Then turn on one plain load, such as a lamp. Check that it runs.",
@@ -837,7 +834,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         *_DARK,
         _CORD_IN,
         "Turn off the branch breakers of all heavy loads: heaters, water heater, air conditioner, stove.",
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on a few lamps and nothing heavy.",
         "Wait 15 minutes. Stay near. Note whether the breaker holds or trips.",
@@ -886,7 +883,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         *_DARK,
         "Close the clamp around the whole cord, where it is whole and dry. Rest the meter where you can read it.",
         _CORD_IN,
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on one load. Check that it runs. Read the clamp, and turn that load off before the next.",
         "If one load makes it trip, leave that load off. Enter the highest reading, in milliamps.",
@@ -901,7 +898,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         _POST_OUT,
         "Connect the cord's plug to a closed break-out lead. Then push the break-out lead's plug into the dock post.",
         "Close the clamp around all line and neutral wires together, with the ground (earth) wire outside.",
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on one load. Check that it runs. Read the clamp, and turn that load off before the next.",
         "If one load makes it trip, leave that load off. Enter the highest reading, in milliamps.",
@@ -922,7 +919,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         _POST_OUT,
         "Connect the cord's plug to a closed break-out lead. Then push the break-out lead's plug into the dock post.",
         "Close the clamp around the green ground (earth) wire only. The wire stays connected.",
-        _POST_ON,
+        _POSTS_ON,
         _MAIN_ON,
         "Turn on one load. Check that it runs. Read the clamp, and turn that load off before the next.",
         "If one load makes it trip, leave that load off. Enter the highest reading, in milliamps.",
@@ -978,11 +975,8 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "why.residual": "The {device} would see {current}: it {verdict}.",
     "why.unprotected": "{current} would stray here, and nothing is watching.",
     "why.hull": "The boat's metal would stand at {volts} against the water around it.",
-    "why.blade": "Bare plug pins would be live, at {volts}.",
     "why.ratio.for": "“{asked}” – “{answer}”: {times} times as likely if this is the cause.",
     "why.ratio.against": "“{asked}” – “{answer}”: {times} times less likely if this is the cause.",
-    "why.ratio.even": "“{asked}” – “{answer}”: says little about this cause.",
-    "why.prior": "Before any answer it stood at {percent}.",
     # --- the verdict at the end ---
     "verdict.named.title": "Most likely: {title}",
     "verdict.named.lead": ("It stands at {percent}. That is an estimate, and a check by the right person comes next.",),
@@ -1024,9 +1018,10 @@ WORDS: dict[str, str | tuple[str, ...]] = {
     "assumed.mistakes": "I count on about {percent} of answers being wrong.",
     "assumed.steady": "I work with steady current. Surges and very fast currents are outside what I can compute.",
     # --- problems with what was typed ---
-    "problem.not_a_number": "That is not a number. Type digits, such as 12.5 or 12,5.",
-    "problem.out_of_range": "It must be between {low} and {high} {unit}.",
-    "problem.wrong_unit": "Please give it in {unit}.",
+    "problem.number": "That is not one number. Type digits, such as 12.5 or 12,5, in {unit}.",
+    "problem.ambiguous": "That can be read in two ways. Leave the comma out, or use a point before the decimals.",
+    "problem.range": "It must be between {low} and {high} {unit}.",
+    "problem.unit": "Please give it in {unit}.",
     "problem.no_choice": "Choose one of the answers. “I don't know” is one of them.",
     "problem.unknown_choice": "That answer is not in the list. Choose one of these.",
     # --- fixed labels of the page: webui/index.html, webui/static_pages.py and webui/page/ name them without "page." ---

@@ -48,7 +48,7 @@ QUESTIONS: tuple[Question, ...] = (
     Question("aboard_device", ("device_30", "none")),
     Question("opened", ("pedestal", "aboard", "both", "feeder")),
     Question("when", ("plug_in", "main_on", "any_load", "one_load", "switching_off", "minutes", "wet", "random")),
-    Question("afloat", ("afloat", "ashore"), opening=False),
+    Question("afloat", ("afloat", "ashore")),
     Question("neighbour", ("yes", "no"), opening=False),
     Question("inverter", ("yes", "no"), opening=False),
 )
