@@ -77,14 +77,10 @@ def expected_information(hypotheses: Hypotheses, weights: Sequence[float], candi
     return max(bits, 0.0)  # rounding may leave a few 1e-17 below
 
 
-def choose(hypotheses: Hypotheses, weights: Sequence[float], candidates: Sequence[Candidate], first: str | None = None) -> Choice | None:
-    """The candidate with the most bits per minute, ties by id; None when none brings INFORMATIVE_BITS.
-
-    A candidate named `first` goes before all others, whatever it brings.
-    """
+def choose(hypotheses: Hypotheses, weights: Sequence[float], candidates: Sequence[Candidate]) -> Choice | None:
+    """The candidate with the most bits per minute, ties by id; None when none brings INFORMATIVE_BITS."""
     choices = [Choice(candidate.id, expected_information(hypotheses, weights, candidate), candidate.minutes) for candidate in candidates]
-    forced = [choice for choice in choices if choice.id == first]
-    worth = forced or [choice for choice in choices if choice.bits >= INFORMATIVE_BITS]
+    worth = [choice for choice in choices if choice.bits >= INFORMATIVE_BITS]
     return min(worth, key=lambda choice: (-choice.bits / choice.minutes, choice.id), default=None)
 
 

@@ -273,8 +273,11 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
         dangerous = tuple(dict.fromkeys((*dangerous, "open_ground_with_leak")))
     if dangerous:
         return _with(session, verdict="danger", group=dangerous)
+    first = _first(session, ordered)
+    if first:
+        return _with(session, test=first)
     why = stop(hypotheses, weights, candidates, physical, len(misfits))
-    chosen = choose(hypotheses, weights, [*candidates, *looks], first="without_y")
+    chosen = choose(hypotheses, weights, [*candidates, *looks])
     if facts.get("plug") == "homemade" and (why or chosen is None):
         deadly = max((cause for cause in marginal if CAUSE[cause].lethal), key=marginal.__getitem__)
         return _with(session, verdict="danger", group=(deadly,))  # a hook-up that nobody can vouch for is not to be used
@@ -282,15 +285,24 @@ def _inferred(ordered: tuple[Answer, ...], facts: dict[str, str], epoch: int, fi
         group = leading_group(hypotheses, weights, candidates) if why == "group" else ()
         if group[:1] == (NOTHING_NOW,):
             why = NOTHING_NOW  # what cannot be told from it here is shown with it
+        if why == NOTHING_NOW and "test_button" in session.allowed:
+            return _with(session, test="test_button")  # holds prove nothing before the device has shown that it opens
         return _with(session, verdict=why, group=group)
     leader = max(marginal, key=marginal.__getitem__)
-    if marginal[leader] >= NAMED and chosen and chosen.id != "without_y":
+    if marginal[leader] >= NAMED and chosen:
         return _with(session, test=verification(hypotheses, weights, candidates, leader))
     if chosen is None:
         return _with(session, verdict="unknown")
     if chosen.id in LOOKS:
         return _with(session, ask=(chosen.id, None))
     return _with(session, test=chosen.id)
+
+
+def _first(session: Session, ordered: Sequence[Answer]) -> str | None:
+    """The test that comes before any gain in information: a Y comes out whole, and wet things are looked at before they get power."""
+    wet = any(answer.question == "when" and answer.value == "wet" for answer in ordered)
+    wanted = ("without_y", "look_over") if wet else ("without_y",)
+    return next((test for test in wanted if test in session.allowed), None)
 
 
 def _with(session: Session, **changes: object) -> Session:

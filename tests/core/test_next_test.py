@@ -123,14 +123,6 @@ def test_ties_go_by_id() -> None:
     assert choose(hypotheses, hypotheses.prior, [binary("b", 2, [0.9, 0.1]), binary("a", 2, [0.9, 0.1])]).id == "a"
 
 
-def test_first_goes_first() -> None:
-    """A test named as first is chosen though another brings more, even if it brings nothing; named but not allowed, it is not."""
-    hypotheses = hypotheses_of(["bond", "leak"], [1, 1])
-    blind, sharp = binary("without_y", 6, [0.5, 0.5]), binary("sharp", 1, [0.9, 0.1])
-    assert choose(hypotheses, hypotheses.prior, [sharp, blind], first="without_y").id == "without_y"
-    assert choose(hypotheses, hypotheses.prior, [sharp], first="without_y").id == "sharp"
-
-
 def test_nothing_worth_doing() -> None:
     """With no candidate, or none that brings a hundredth of a bit, there is no next test."""
     hypotheses = hypotheses_of(["bond", "leak"], [1, 1])

@@ -327,3 +327,46 @@ def test_a_fact_that_is_rare_is_no_contradiction() -> None:
     """A boat on land is rare and no misfit: only what tests and history say can contradict a cause."""
     for session in (after(afloat="ashore"), after(*REPORTS), after(*REPORTS, afloat="ashore")):
         assert not {session.observations[index].answer.question for index in session.misfits} & set(LOOKS)
+
+
+def test_nothing_now_is_said_only_after_the_device_has_shown_that_it_opens() -> None:
+    """Where TEST may be pressed, it is pressed before any case ends in nothing now."""
+    pairs = [("gate", None, "none"), ("role", None, "technician"), ("tools", None, "insulation"), ("supply", None, "split_120_240")]
+    pairs += [("plug", None, "one_cord"), ("pedestal_device", None, "device_30"), ("aboard_device", None, "device_30")]
+    pairs += [("opened", None, "pedestal"), ("when", None, "random"), ("afloat", None, "afloat")]
+    good = {
+        "look_over": "clean",
+        "test_button": "opens",
+        "one_at_a_time": "holds_all",
+        "adapter_continuity": "fine",
+        "bond_ohms": "over_range",
+    }
+    good |= {
+        "insulation": "over_range",
+        "clamp_cord": "0.3",
+        "clamp_live": "1.5",
+        "clamp_ground": "1.4",
+        "neighbour": "no",
+        "inverter": "no",
+    }
+    for _ in range(60):
+        session = replay([Answer(question, subject, value, seq) for seq, (question, subject, value) in enumerate(pairs, 1)])
+        if session.verdict:
+            break
+        question, subject = session.ask or (session.test or "", None)
+        pairs.append((question, subject, "clear" if subject else good.get(question, "holds")))
+    assert session.verdict == "nothing_now"
+    assert "test_button" in {question for question, _, _ in pairs}
+
+
+def test_wet_things_are_looked_at_before_they_get_power() -> None:
+    """When it trips in the wet, the first test is to look, with the power off."""
+    pairs = [("gate", "none"), ("role", "user"), ("tools", "none"), ("supply", "split_120_240"), ("plug", "one_cord")]
+    pairs += [
+        ("pedestal_device", "device_30"),
+        ("aboard_device", "device_30"),
+        ("opened", "pedestal"),
+        ("when", "wet"),
+        ("afloat", "afloat"),
+    ]
+    assert replay([Answer(question, None, value, seq) for seq, (question, value) in enumerate(pairs, 1)]).test == "look_over"
