@@ -88,12 +88,14 @@ def journey() -> tuple[list[dict[str, Any]], list[bool]]:
     requests: list[dict[str, Any]] = []
     changed: list[bool] = []
     for setup in SETUPS:
-        given = {"gate": "none", "role": "technician", "tools": "clamp", **dict(zip(TOLD, setup, strict=True))}
+        given = {"gate": "none", "role": "technician", "tools": "clamp", **dict(zip(TOLD, setup, strict=True)), "afloat": "afloat"}
         answers = [_answer(question, None, value, seq) for seq, (question, value) in enumerate(given.items(), 1)]
         first = True
         while len(answers) < len(given) + 2 * TESTS_ANSWERED:
             request = {"language": "en", "units": "si", "view": "flow", "answers": list(answers)}
             screen = json.loads(handle(json.dumps({"id": "1", "protocol": 1, **request})))["screen"]
+            if first and not screen["ranking"]:
+                raise RuntimeError(f"this set-up is not told in full: {screen['title']}")
             requests.append(request)
             changed.append(first)
             first = False
