@@ -197,17 +197,22 @@ def _receptacle(part: Part, wiring: _Wiring) -> None:
         wiring.branches = [branch for branch in wiring.branches if branch.id not in opened]
 
 
+def _joined(part: Part, sources: list[Conductors], wiring: _Wiring, ohms: Mapping[str, float]) -> None:
+    """Two supply ends in one part: each brings a line, and their neutrals and grounds meet."""
+    ends = {conductor: f"{part.id}.{conductor}" for conductor in ("L1", "L2", "N", "G")}
+    for tail, line, source in zip("ab", ("L1", "L2"), sources, strict=True):
+        wiring.add(f"{part.id}.{line}", source["L1"], ends[line], ohms["line"], "line", part.id)
+        wiring.add(f"{part.id}.{tail}.N", source["N"], ends["N"], ohms["neutral"], "neutral", part.id)
+        wiring.add(f"{part.id}.{tail}.G", source["G"], ends["G"], ohms["ground"], "protective", part.id)
+    wiring.ends[part.id] = ends
+
+
 def _adapter(part: Part, wiring: _Wiring) -> None:
     sources = [_source(part, number, wiring) for number in range(len(part.parents))]
     ohms = _short_ohms(part)
     style = part.text("style")
     if len(sources) == 2:
-        ends = {conductor: f"{part.id}.{conductor}" for conductor in ("L1", "L2", "N", "G")}
-        for tail, line, source in zip("ab", ("L1", "L2"), sources, strict=True):
-            wiring.add(f"{part.id}.{line}", source["L1"], ends[line], ohms["line"], "line", part.id)
-            wiring.add(f"{part.id}.{tail}.N", source["N"], ends["N"], ohms["neutral"], "neutral", part.id)
-            wiring.add(f"{part.id}.{tail}.G", source["G"], ends["G"], ohms["ground"], "protective", part.id)
-        wiring.ends[part.id] = ends
+        _joined(part, sources, wiring, ohms)
     elif style == "splitting_y":
         source = sources[0]
         for tail, line in zip("ab", ("L1", "L2" if "L2" in source else "L1"), strict=True):
@@ -241,16 +246,10 @@ def opened_by_main(part: Part) -> frozenset[str]:
 
 def _panel(part: Part, wiring: _Wiring) -> None:
     sources = [wiring.ends[parent] for parent in part.parents]
-    ohms = _short_ohms(part)
-    if len(sources) == 1:
-        _through(part, sources[0], wiring, ohms)
-        return
-    ends = {conductor: f"{part.id}.{conductor}" for conductor in ("L1", "L2", "N", "G")}
-    for tail, line, source in zip("ab", ("L1", "L2"), sources, strict=True):
-        wiring.add(f"{part.id}.{line}", source["L1"], ends[line], ohms["line"], "line", part.id)
-        wiring.add(f"{part.id}.{tail}.N", source["N"], ends["N"], ohms["neutral"], "neutral", part.id)
-        wiring.add(f"{part.id}.{tail}.G", source["G"], ends["G"], ohms["ground"], "protective", part.id)
-    wiring.ends[part.id] = ends
+    if len(sources) == 2:
+        _joined(part, sources, wiring, _short_ohms(part))
+    else:
+        _through(part, sources[0], wiring, _short_ohms(part))
 
 
 def _fed(part: Part, installation: Installation) -> list[str]:
