@@ -167,6 +167,7 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
         lead.append(speech.say("progress.misfit", answers=_misfits(session, speech)))
     fixers = sorted({CAUSE[cause].repair for cause in causes}, key=REPAIRERS.index)
     title = speech.say(f"verdict.{session.verdict}.title", **fields)
+    unsure = len(causes) > 1 or session.verdict == "danger"
     verdict = {
         "stop": session.verdict,
         "causes": causes,
@@ -174,7 +175,10 @@ def _outcome(session: Session, speech: _Speech) -> Screen:
         "lead": [
             line
             for cause in causes
-            for line in (*([speech.say(f"cause.{cause}.title")] if len(causes) > 1 else []), *speech.lines(f"cause.{cause}.lead"))
+            for line in (
+                *([speech.say("verdict.possible", title=speech.say(f"cause.{cause}.title"))] if unsure else []),
+                *speech.lines(f"cause.{cause}.lead"),
+            )
         ],
         "repair": " ".join(speech.say(f"repair.{role}") for role in fixers) or speech.say("repair.technician"),
         "remedy": list(

@@ -29,6 +29,7 @@ FIELDS = {
     "why.ratio.for": {"asked", "answer", "times"},
     "why.ratio.against": {"asked", "answer", "times"},
     "verdict.named.title": {"title"},
+    "verdict.possible": {"title"},
     "verdict.named.lead": {"percent"},
     "verdict.group.title": {"count"},
     "verdict.group.lead": {"percent"},

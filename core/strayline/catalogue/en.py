@@ -995,6 +995,7 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "Your answers fit no single cause well enough, and no test is left that you may do.",
         "Leave the boat unplugged and call a marine electrical technician. Show this page.",
     ),
+    "verdict.possible": "It may be this: {title}.",
     "verdict.danger.title": "Stop: do not use this hook-up",
     "verdict.danger.lead": (
         "What you told me can make metal or water live.",
