@@ -137,7 +137,9 @@ def test_ask_as_json_is_the_reply_of_the_contract(file: Path | None) -> None:
 
 def test_ask_leads_to_an_end_by_typing() -> None:
     """By typing numbers alone the flow goes from the gate to a named cause, who may fix it, and what to do tonight."""
-    done = core("ask", typed=lines_of(**SET_UP, when="wet", look_over="clean", cord_alone="trips", pedestal_alone="holds", main_off="trips"))
+    done = core(
+        "ask", typed=lines_of(**SET_UP, when="wet", look_over="clean", cord_alone="trips", pedestal_alone="holds", main_off="trips")
+    )
     assert done.returncode == 0, done.stderr
     assert done.stderr == ""
     assert "Most likely: The shore cord is wet or damaged" in done.stdout
