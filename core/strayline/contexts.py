@@ -43,7 +43,7 @@ def setting(context: str, installation: Installation) -> Installation | None:
     return installation
 
 
-def _rows(installation: Installation) -> dict[str, dict[str, object]]:
+def raw_rows(installation: Installation) -> dict[str, dict[str, object]]:
     """The parts as raw rows again, to be changed and read anew."""
     rows = {}
     for part in installation.parts:
@@ -54,7 +54,7 @@ def _rows(installation: Installation) -> dict[str, dict[str, object]]:
 
 def _without_y(installation: Installation) -> Installation | None:
     """The whole Y out, and one straight adapter in its place on one receptacle."""
-    rows = _rows(installation)
+    rows = raw_rows(installation)
     found = [part for part in own_parts(installation) if part.kind == "adapter" and len(part.parents) == 2]
     if not found:
         return None
@@ -65,7 +65,7 @@ def _without_y(installation: Installation) -> Installation | None:
 
 def _other_pedestal(installation: Installation) -> Installation | None:
     """The same cord in a free receptacle of the same type at another pedestal."""
-    rows = _rows(installation)
+    rows = raw_rows(installation)
     mine = [part for part in own_parts(installation) if part.kind == "receptacle"]
     if len(mine) != 1:
         return None
@@ -171,7 +171,7 @@ def worst_for_blades(installation: Installation) -> Installation:
     A switch that is off now is on a minute later, with the same plug out. A load from line to neutral only pulls a loose blade down
     towards neutral, so it counts as off.
     """
-    rows = _rows(installation)
+    rows = raw_rows(installation)
     for row in rows.values():
         if row["kind"] == "load":
             row["on"] = row["across"] == "L1-L2"
