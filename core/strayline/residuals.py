@@ -13,6 +13,8 @@ from strayline.parts import Installation, base, read
 from strayline.phasor import angle_deg, shown_angle
 
 if TYPE_CHECKING:
+    from collections.abc import Collection
+
     from strayline.casefile import Case
     from strayline.network import Branch, Network
 
@@ -71,14 +73,15 @@ def _crossings(installation: Installation, network: Network, solution: solve.Sol
     found = []
     for sensor in network.sensors:
         for branch, current in solve.crossings(network, solution, sensor.id):
-            kind = _crossing_kind(branch, network, sensor.id in mine, mine)
+            kind = crossing_kind(branch, network, sensor.id in mine, mine)
             found.append(
                 {"sensor": sensor.id, "branch": branch.id, "kind": kind, "ma": abs(current) * 1e3, "angle_deg": shown_angle(current)}
             )
     return found
 
 
-def _crossing_kind(branch: Branch, network: Network, own: bool, mine: set[str]) -> str:
+def crossing_kind(branch: Branch, network: Network, own: bool, mine: Collection[str]) -> str:
+    """By what kind of road a branch crosses a zone's boundary; `own` tells whether the sensor is the boat's, `mine` are her parts."""
     if network.reference in (branch.from_node, branch.to_node):
         return "water"
     owner = base(branch.owner)
