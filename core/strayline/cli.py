@@ -1,4 +1,4 @@
-"""The command line: `python3 core residuals|diagnose|netlist|ask FILE`. JSON is never rounded; text is."""
+"""The command line: `python3 core residuals|diagnose|netlist|ask|plan|ledger FILE`. JSON is never rounded; text is."""
 
 from __future__ import annotations
 
@@ -11,7 +11,9 @@ from typing import TYPE_CHECKING, Any
 
 from strayline import __version__, casefile, report
 from strayline.errors import CaseError, StraylineError
+from strayline.ledger import ledger
 from strayline.netlist import netlist
+from strayline.plan import plan
 from strayline.protocol import MAX_VALUE, PROTOCOL, handle
 from strayline.residuals import residuals, stated_network
 
@@ -40,6 +42,16 @@ def _diagnose(arguments: argparse.Namespace) -> None:
 def _netlist(arguments: argparse.Namespace) -> None:
     case = casefile.load(arguments.file)
     print(netlist(stated_network(case)[1], str(case.meta.get("title", Path(arguments.file).stem))), end="")
+
+
+def _plan(arguments: argparse.Namespace) -> None:
+    found = plan(casefile.load(arguments.file))
+    _print_json(found) if arguments.json else print(report.plan_text(found))
+
+
+def _ledger(arguments: argparse.Namespace) -> None:
+    found = ledger(casefile.load(arguments.file))
+    _print_json(found) if arguments.json else print(report.ledger_text(found))
 
 
 def _request(case: Case | None) -> str:
@@ -89,6 +101,8 @@ def _parser() -> argparse.ArgumentParser:
     table: tuple[tuple[str, str, Callable[[argparse.Namespace], None]], ...] = (
         ("residuals", "what every sensor sees in a case: residuals, hull volts, live blades, crossings", _residuals),
         ("diagnose", "rank the causes of a case from its installation and answers", _diagnose),
+        ("plan", "every way to connect this boat here: will it hold, may it be used, what power is left", _plan),
+        ("ledger", "leakage by circuit, and what it leaves to each device", _ledger),
         ("netlist", "the case as SPICE text that ngspice runs unchanged", _netlist),
     )
     for name, help_text, run in table:

@@ -1,4 +1,4 @@
-"""What the terminal says: a diagnosis as JSON, and residuals, diagnosis and screens as text for people (rounded)."""
+"""What the terminal says: a diagnosis as JSON; residuals, plan, ledger, diagnosis and screens as text for people (rounded)."""
 
 from __future__ import annotations
 
@@ -14,7 +14,36 @@ from strayline.screen import Screen, current_text, percent, tonight_of, words_of
 from strayline.session import LOOKS, Answer, Session
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from strayline.casefile import Case
+
+SHOWN_WAYS = 12  # in text; JSON has them all
+RULES = {
+    "forced_plug": "its plug does not belong in that outlet",
+    "homemade": "home-made: nobody knows how it is wired",
+    "miswired": "wired wrongly",
+    "reversed_outlet": "line and neutral are exchanged in the outlet",
+    "reversed": "line and neutral arrive exchanged",
+    "no_device": "the outlet has no ground-fault device",
+    "dead_device": "the outlet's ground-fault device never opens",
+    "joined_neutrals": "two neutrals meet, so each outlet loses sight of its own return",
+    "shared_neutral": "both lines are in phase, so the common neutral may carry more than it is made for, and no breaker watches it",
+    "no_protective_conductor": "its ground does not reach the dock's",
+    "trips_unloaded": "trips with every load off",
+    "undersized": "rated for less than the breaker ashore",
+    "live_blades": "bare blades are live",
+    "live_loose_plug": "with the other plug out, its bare blades are live",
+    "overload": "more than it may carry for long",
+    "low_volts": "too few volts",
+    "live_hull": "the boat's metal is live",
+    "connector_assumed": "nobody said which plug it has; taken as",
+    "grounded_neutral_loop": "may open with every load off, because it finds a neutral tied to ground",
+    "dead": "gets no power here",
+    "residual": "brings this device near its trip",
+    "fits_nowhere": "fits nothing here",
+    "unknown_ends": "nobody said which ends it has",
+}
 
 
 def diagnosis(case: Case) -> dict[str, Any]:
@@ -82,6 +111,90 @@ def residuals_text(found: dict[str, Any]) -> str:
     if found["floating"]:
         lines.append("Connected to nothing: " + ", ".join(found["floating"]))
     return "\n".join(lines)
+
+
+def _told(one: Mapping[str, Any]) -> str:
+    """One reason, caution or load to leave off, in a line."""
+    value, unit = one["value"], one["unit"]
+    if value is None or value == "":
+        shown = ""
+    elif isinstance(value, float):
+        shown = f" ({current_text(value / 1e3)})" if unit == "mA" else f" ({value:.3g} {unit})".replace(" )", ")")
+    else:
+        shown = f" ({value})"
+    return f"{one['part']}: {RULES[one['rule']]}{shown}"
+
+
+def _way_lines(number: int, way: Mapping[str, Any]) -> list[str]:
+    road = ", ".join(f"{link['part']} in {' and '.join(end or 'nothing' for end in link['from'])}" for link in way["connections"])
+    now = " (as it is now)" if way["present"] else ""
+    lines = [f"{number}. {road}{now}", f"   With all loads on, or one, or none: {way['holds']}. Verdict: {way['use']}."]
+    if way["inlets_out"]:
+        lines.append(f"   Left out: {', '.join(way['inlets_out'])}")
+    why = way["why"]
+    if why:
+        state = {"all_on": "all loads on", "all_off": "all loads off"}.get(why["state"], f"only {why['load']} on")
+        stray = why["crossing"]
+        by = f", most of it by {stray['branch']} ({stray['kind']})" if stray and why["residual_ma"] >= 0.05 else ""
+        lines.append(f"   Nearest to tripping: {why['sensor']} with {current_text(why['residual_ma'] / 1e3)} ({state}){by}")
+    lines += [f"   ! {_told(one)}" for one in way["reasons"]]
+    lines += [f"   - {_told(one)}" for one in way["cautions"]]
+    lines += [
+        f"   Left on {row['receptacle']} {row['line']}: {row['left_a']:.1f} A of {row['limit_a']:.1f} A, about {row['left_w']:.0f} W"
+        for row in way["lines"]
+    ]
+    lines += [f"   Leave off {one['load']}: {_told(one)}" for one in way["loads_off"]]
+    lines += [f"   {one['load']} runs at {percent(one['power_share'])} of its power ({one['volts']:.0f} V)" for one in way["loads_weak"]]
+    if way["loads_off"]:
+        eased = way["with_loads_off"]
+        lines.append(f"   With those off: {eased['holds']}. Verdict: {eased['use']}.")
+    return lines
+
+
+def plan_text(found: Mapping[str, Any]) -> str:
+    """A plan for people: the best ways first, each with both verdicts."""
+    lines = [] if found["ways"] else ["No way: nothing aboard fits an outlet here and this boat's inlet."]
+    for number, way in enumerate(found["ways"][:SHOWN_WAYS], 1):
+        lines += [*_way_lines(number, way), ""]
+    hidden = len(found["ways"]) - SHOWN_WAYS
+    if hidden > 0:
+        lines.append(f"{hidden} more ways, none better, are in --json.")
+    if found["left_out"]:
+        least = "at least " if found["left_out_at_least"] else ""
+        lines.append(f"{least}{found['left_out']} more ways were not worked out.")
+    lines += [f"Not used: {one['part']}: {RULES[one['rule']]}" for one in found["unused"]]
+    lines += [f"Assumed: {one['part']} has a {one['connector']} plug" for one in found["assumed"]]
+    return "\n".join([*lines, "Nothing here says that a way is free of danger. What trips is doing its work."])
+
+
+def _range_text(bounds: list[float]) -> str:
+    low, high = (current_text(value / 1e3) for value in bounds)
+    return low if low == high else f"{low} to {high}"
+
+
+def ledger_text(found: Mapping[str, Any]) -> str:
+    """A ledger for people: each circuit's leakage and each device's headroom."""
+    lines = ["Leakage by circuit (with all that hangs on it)"]
+    for row in found["circuits"]:
+        known, total = row["total"]["known"], row["total"]
+        if total["ma"][1] < 0.0005:
+            continue
+        at = "" if known["angle_deg"] is None else f" at {known['angle_deg']:.0f} degrees"
+        more = f", unmeasured {_range_text(total['unknown_ma'])}" if total["unknown_ma"][1] else ""
+        lines.append(f"  {row['part']:<14} {row['kind']:<11} known {current_text(known['ma'] / 1e3)}{at}{more}")
+    lines.append("Each device")
+    for row in found["sensors"]:
+        lines.append(f"  {row['id']:<14} {row['device']:<11} {_range_text(row['ma'])}: {row['verdict']['known']}")
+        if row["headroom"]:
+            holding, operating = (" to ".join(f"{ma:.1f}" for ma in bounds) for bounds in row["headroom"].values())
+            lines.append(f"    left before it may trip: {holding} mA; before it must: {operating} mA")
+        lines += [
+            f"    {current_text(one['ma'] / 1e3)} by {one['part']} ({'to ground' if one['kind'] == 'ground' else 'back by another road'})"
+            for one in row["shares"]
+            if one["ma"] >= 0.05
+        ]
+    sources = sorted({f"{row['part']}: {row['source']}" for row in found["circuits"] if row["unknown_ma"][1]})
+    return "\n".join([*lines, *(["Where nothing was measured"] if sources else []), *(f"  {line}" for line in sources)])
 
 
 def diagnosis_text(found: dict[str, Any]) -> str:
