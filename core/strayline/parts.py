@@ -234,7 +234,8 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
         if splitting != ("." in parent) or (splitting and parent.partition(".")[2] not in ("a", "b")):
             rule = "a splitting Y is named with its tail, .a or .b" if splitting else "only a splitting Y has tails"
             raise CaseError(f"{path}.from", rule, parent)
-    if len(set(part.parents)) != len(part.parents):
+    hung_on = [parent for parent in part.parents if parent]  # two loose plugs are no contradiction
+    if len(set(hung_on)) != len(hung_on):
         raise CaseError(f"{path}.from", "the same part twice", ", ".join(part.parents))
     if part.kind == "adapter":
         wanted = {"combining_y": (2,), "homemade": (1, 2)}.get(part.text("style"), (1,))
