@@ -110,7 +110,7 @@ class Predictions:
 def predictions(installation: Installation, latents: Sequence[Sequence[Latent]]) -> Predictions:
     """All points of an installation: causes that can be there, their severities, and every combination of unknown facts."""
     points: list[Point] = []
-    for cause in CAUSES:
+    for cause in (cause for cause in CAUSES if cause.weighed):
         found = []
         for severity in severities(cause.id, installation):
             for combination in itertools.product(*latents):

@@ -21,6 +21,7 @@ class Cause:
     repair    -- who may repair it: "user", "technician" (aboard) or "electrician" (ashore)
     lethal    -- a wrong "benign" here can kill
     source    -- where prior and timing come from
+    weighed   -- False: the circuit half knows it, the ranking does not weigh it yet
     """
 
     id: str
@@ -32,6 +33,7 @@ class Cause:
     source: str = "common practice"
     timing: dict[str, float] = field(default_factory=dict)
     requires: tuple[str, str] | None = None
+    weighed: bool = True
 
 
 _AT_ONCE = {"computed": 0.90, "minutes": 0.03, "random": 0.05, "wet": 0.02}
