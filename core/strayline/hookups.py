@@ -339,7 +339,6 @@ def hookups(installation: Installation, own: Kit, most: int, marked: frozenset[s
     search = _Search(own, marked)
     now = _present(installation, own)
     shape = search.shape(dict(now.links)) if now else None
-    place = {part.id: number for number, part in enumerate(installation.parts)}
     counted = 0
 
     def found() -> Iterator[tuple[tuple[int, int, int], Links]]:
@@ -353,7 +352,7 @@ def hookups(installation: Installation, own: Kit, most: int, marked: frozenset[s
             yield (adapters, -inlets, counted), links
 
     best = heapq.nsmallest(most - bool(now), found(), key=lambda pair: pair[0])
-    ways = [Hookup(tuple(sorted(links.items(), key=lambda link: place[link[0]]))) for _, links in best]
+    ways = [Hookup(tuple(links.items())) for _, links in best]
     return Hookups((*((now,) if now else ()), *ways), counted + bool(now), counted > MAX_COUNTED - 1)
 
 

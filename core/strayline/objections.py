@@ -24,6 +24,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable
 
     from strayline.connections import Wired
+    from strayline.network import Blade, Network
 
 LIVE_BLADE_VOLTS = DANGEROUS_HULL_VOLTS
 GROUNDED_NEUTRAL_OHMS = devices.WINDOW_OHM[1]
@@ -193,7 +194,7 @@ def _undersized(way: Wired) -> list[Objection]:
 
 def _live_blades(way: Wired) -> list[Objection]:
     """Bare blades that are live while the boat is connected like this: an inlet left out, a tail left loose."""
-    blade, volts = _blade_volts(way, way.installation)
+    blade, volts = _blade_volts(way, way.installation) if _own_blades(way, way.network) else ("", 0.0)
     return [Objection("live_blades", blade, volts, "V")] if volts > LIVE_BLADE_VOLTS else []
 
 
@@ -208,6 +209,12 @@ def _live_loose_plugs(way: Wired) -> list[Objection]:
     return found
 
 
+def _own_blades(way: Wired, network: Network) -> list[Blade]:
+    """The bare blades of the boat and of what she has plugged in."""
+    ours = way.own.aboard | {part_id for part_id, _ in way.hookup.links}
+    return [blade for blade in network.blades if base(blade.id) in ours]
+
+
 def _unplugged(installation: Installation, receptacle: str) -> Installation:
     """The same with the plug pulled out of one outlet."""
     rows = raw_rows(installation)
@@ -219,13 +226,9 @@ def _unplugged(installation: Installation, receptacle: str) -> Installation:
 
 def _blade_volts(way: Wired, installation: Installation) -> tuple[str, float]:
     """The boat's bare blade with the most volts to the water, at its worst for blades: its id and its volts."""
-    ours = way.own.aboard | {part_id for part_id, _ in way.hookup.links}
     network = faulted(worst_for_blades(installation), way.faults)
-    blades = [blade for blade in network.blades if base(blade.id) in ours]
-    if not blades:
-        return "", 0.0
     solution = solve.solve(network)
-    volts = {blade.id: abs(solution.voltage(blade.node) or 0) for blade in blades}
+    volts = {blade.id: abs(solution.voltage(blade.node) or 0) for blade in _own_blades(way, network)}
     most = max(sorted(volts), key=lambda one: volts[one])
     return most, volts[most]
 

@@ -12,6 +12,8 @@ from pathlib import Path
 import pytest
 
 from strayline import __version__, casefile
+from strayline.ledger import ledger
+from strayline.plan import plan
 from strayline.protocol import PROTOCOL, handle
 from strayline.residuals import residuals
 
@@ -63,7 +65,7 @@ def test_help_is_help(arguments: tuple[str, ...]) -> None:
     assert (done.stdout.strip() == __version__) == ("--version" in arguments)
 
 
-@pytest.mark.parametrize("arguments", [("residuals",), ("diagnose",), ("frobnicate",), ("ask", "--colour"), ("netlist", "a", "b")])
+@pytest.mark.parametrize("arguments", [("residuals",), ("diagnose",), ("plan",), ("ledger",), ("frobnicate",), ("ask", "--colour"), ("netlist", "a", "b")])
 def test_wrong_arguments_are_told(arguments: tuple[str, ...]) -> None:
     """Missing, unknown or too many arguments end with status 2, a usage line and no trace."""
     done = core(*arguments)
@@ -73,7 +75,7 @@ def test_wrong_arguments_are_told(arguments: tuple[str, ...]) -> None:
     assert "Traceback" not in done.stderr
 
 
-@pytest.mark.parametrize("command", ["residuals", "diagnose", "netlist"])
+@pytest.mark.parametrize("command", ["residuals", "diagnose", "netlist", "plan", "ledger"])
 @pytest.mark.parametrize(
     "content", [b"", b"\xff\xfe", b"x = [", b'schema = 99\nformat = "strayline-case"', b"schema = 1\n[engine]\n", None]
 )
@@ -113,6 +115,28 @@ def test_residuals_and_diagnose_as_json_and_as_text() -> None:
     found = json.loads(core("diagnose", file, "--json").stdout)
     assert list(found) == ["ranking", "groups", "stop", "next_test", "tonight"]
     assert found["ranking"][0]["title"] in core("diagnose", file).stdout
+
+
+@pytest.mark.parametrize("command", ["plan", "ledger"])
+def test_plan_and_ledger_as_json_and_as_text(command: str) -> None:
+    """As JSON the numbers are not rounded and are those of the room; as text every outlet and every sensor in them has its line."""
+    file = ROOT / "scenarios" / "y_on_two_outlets.toml"
+    done = core(command, file, "--json")
+    assert done.returncode == 0, done.stderr
+    expected = {"plan": plan, "ledger": ledger}[command](casefile.load(file))
+    assert json.loads(done.stdout) == json.loads(json.dumps(expected))
+    text = core(command, file).stdout
+    assert all(name in text for name in ("outlet_a", "outlet_b"))
+    assert "Traceback" not in text
+
+
+def test_a_plan_without_a_boat_is_one_line(tmp_path: Path) -> None:
+    """A dock with no boat is a bad file for a plan: status 2 and one line."""
+    file = tmp_path / "case.toml"
+    file.write_text('schema = 1\ninstallation.parts = [{ id = "dock", kind = "supply", system = "split_120_240" }]\n', encoding="utf-8")
+    done = core("plan", file)
+    assert (done.returncode, done.stdout) == (2, "")
+    assert re.fullmatch(rf"{re.escape(str(file))}: installation[^\n]+inlet[^\n]+\n", done.stderr)
 
 
 @pytest.mark.parametrize("file", SCENARIOS[:4], ids=lambda file: file.stem)
