@@ -96,12 +96,18 @@ def wired(installation: Installation, own: Kit, hookup: Hookup, faults: tuple[Fa
             if f"{part.id}.{line}" in there:
                 probes["panel", part.id, line] = Probe(nodes=((f"{part.id}.{line}", 1), (f"{part.id}.N", -1)))
     for load in loads:
-        first, second = (f"{base(load.parents[0])}.{conductor}" for conductor in load.text("across").split("-"))
-        probes["load", load.id] = Probe(nodes=((first, 1), (second, -1)))
+        probes["load", load.id] = Probe(nodes=tuple(zip(_terminals(network, load), (1, -1), strict=False)))
     for hull, node in network.hulls:
         if hull in own.aboard:
             probes["hull", hull] = Probe(nodes=((node, 1),))
     return Wired(own, hookup, made, network, Loadings(network, switches, probes), sensors, receptacles, panels, loads, faults)
+
+
+def _terminals(network: Network, load: Part) -> list[str]:
+    """The two nodes outside a load that its own conductors lead to."""
+    inner = [branch for branch in network.branches if branch.id.startswith(f"{load.id}.") and branch.kind in ("line", "neutral", "load")]
+    ends = dict.fromkeys(node for branch in inner for node in (branch.from_node, branch.to_node) if base(node) != load.id)
+    return list(ends)[:2]
 
 
 def _drawn_on(network: Network, own: Kit, receptacles: tuple[Part, ...]) -> list[Branch]:
