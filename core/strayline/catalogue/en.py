@@ -591,6 +591,678 @@ WORDS: dict[str, str | tuple[str, ...]] = {
         "My boat tripped the power, and the cause has not been found. It may come back. Please tell me when this post or the dock trips."
     ),
     "cause.nothing_now.confirm": "Only time and a log can tell. A technician can test the insulation of each circuit meanwhile.",
+    "cause.damp_element.title": "A heater is damp from standing unused",
+    "cause.damp_element.lead": (
+        "A water heater, oven or space heater that stood unused draws damp into its element. The damp lets current reach the "
+        "case until the heat has dried it."
+    ),
+    "cause.damp_element.tonight": (*_LETHAL_TONIGHT, "Leave every heater and the oven off."),
+    "cause.damp_element.remedy": (
+        "Leave that heater off and out of use.",
+        "A technician takes it out, dries it on the bench and tests it. If it stays low, it is replaced.",
+        "Do not try to dry it out on shore power.",
+    ),
+    "cause.damp_element.marina": (
+        "My boat trips the power. A heater that stood unused seems to be damp. The boat stays unplugged until a technician has tested it."
+    ),
+    "cause.damp_element.confirm": (
+        "A technician tests that heater alone, unplugged: insulation is low when cold and rises as it dries on the bench."
+    ),
+    "cause.compressor_leak.title": "A cooling compressor leaks",
+    "cause.compressor_leak.lead": (
+        "Inside the sealed compressor of an air conditioner or freezer, the wire of the motor leaks to the shell. It leaks most "
+        "when it starts, and when it is hot."
+    ),
+    "cause.compressor_leak.tonight": (*_LETHAL_TONIGHT, "Leave the air conditioner, fridge and freezer off."),
+    "cause.compressor_leak.remedy": (
+        "Leave that unit off and out of use.",
+        "A technician tests the compressor and its start parts, and replaces what leaks.",
+    ),
+    "cause.compressor_leak.marina": (
+        "My boat trips the power. A compressor aboard seems to leak to ground (earth). The boat stays unplugged until a technician has "
+        "tested it."
+    ),
+    "cause.compressor_leak.confirm": (
+        "A technician tests from each motor terminal to the shell, unplugged: below about 2 megohms counts as a fault in makers' handbooks."
+    ),
+    "cause.branch_wiring_leak.title": "A cable aboard is chafed or wet",
+    "cause.branch_wiring_leak.lead": (
+        "Behind one breaker a cable has rubbed through, or a joint is wet. Current gets from the wire to metal or bilge water, "
+        "even with the appliance off."
+    ),
+    "cause.branch_wiring_leak.tonight": (*_LETHAL_TONIGHT, "Keep that breaker off. Touch no wet cable or joint."),
+    "cause.branch_wiring_leak.remedy": (
+        "Leave that breaker off.",
+        "A technician tests the circuit piece by piece and replaces the bad cable or joint.",
+        "Then the new cable is kept clear of edges and of the bilge.",
+    ),
+    "cause.branch_wiring_leak.marina": (
+        "My boat trips the power. A cable aboard seems to leak. The boat stays unplugged until a technician has repaired it."
+    ),
+    "cause.branch_wiring_leak.confirm": (
+        "A technician tests that circuit with its appliances unplugged, all sources locked out: insulation stays low on the cable itself."
+    ),
+    "cause.charger_filter.title": "One charger leaks through its filter",
+    "cause.charger_filter.lead": (
+        "A charger or other large power unit has a filter that lets a little current pass to ground (earth) all the time. A big or "
+        "failing filter passes enough to trip the device."
+    ),
+    "cause.charger_filter.tonight": (_UNPLUGGED, _NO_SWIM, "Turn the charger off. Watch the battery that feeds the bilge pump."),
+    "cause.charger_filter.remedy": (
+        "Leave that charger off.",
+        "A technician reads its leakage and replaces it with a marine unit that leaks little.",
+    ),
+    "cause.charger_filter.marina": (
+        "One charger aboard seems to leak enough to trip the power. The boat stays unplugged until a technician has read it."
+    ),
+    "cause.charger_filter.confirm": (
+        "A technician clamps the boat's live wires as the charger goes on: the reading jumps at once, while its insulation tests high."
+    ),
+    "cause.surge_suppressor.title": "A surge strip is worn out",
+    "cause.surge_suppressor.lead": (
+        "The parts in a surge strip that catch pulses wear out. Then they let current pass to ground (earth) all the time, and more "
+        "when something is switched."
+    ),
+    "cause.surge_suppressor.tonight": (_UNPLUGGED, _NO_SWIM, "Take the surge strip out of use once the boat is unplugged."),
+    "cause.surge_suppressor.remedy": (
+        "Throw the surge strip away. Do not use it ashore.",
+        "If surge parts are built in, a technician replaces them.",
+    ),
+    "cause.surge_suppressor.marina": (
+        "A worn surge strip aboard seems to trip the power. I have taken it out of use. The boat stays unplugged until it has been tested."
+    ),
+    "cause.surge_suppressor.confirm": "A technician reads the leakage with the surge strip in use and again with it out: it falls at once.",
+    "cause.cycling_appliance.title": "An appliance leaks in part of its cycle",
+    "cause.cycling_appliance.lead": (
+        "A fridge, ice maker, washer or pump works in cycles. It leaks only in one part of the cycle, such as the defrost, so it "
+        "trips hours apart."
+    ),
+    "cause.cycling_appliance.tonight": (
+        *_LETHAL_TONIGHT,
+        "Leave fridges, ice makers, washers and automatic pumps off, the bilge pump on its battery excepted.",
+    ),
+    "cause.cycling_appliance.remedy": (
+        "Note the time of each trip, and which machine was at work.",
+        "A technician runs each machine through its whole cycle and tests it.",
+        "The one that leaks is repaired or replaced.",
+    ),
+    "cause.cycling_appliance.marina": (
+        "My boat trips the power some hours apart. A machine that works in cycles seems to leak. The boat stays unplugged until a "
+        "technician has found it."
+    ),
+    "cause.cycling_appliance.confirm": (
+        "A technician logs the leakage over a day: it rises each time that one machine starts the same part of its cycle."
+    ),
+    "cause.isolator_self_test.title": "The galvanic isolator tests itself",
+    "cause.isolator_self_test.lead": (
+        "Some older isolators against corrosion test themselves. They send a small current through the ground (earth) wire now and "
+        "then. The dock device takes it for a leak."
+    ),
+    "cause.isolator_self_test.tonight": (_UNPLUGGED, _NO_SWIM, _TELL),
+    "cause.isolator_self_test.remedy": (
+        "A technician checks the isolator and its monitor.",
+        "An isolator that keeps the ground (earth) path when it fails, and needs no monitor, takes its place.",
+        "The ground (earth) wire itself stays connected.",
+    ),
+    "cause.isolator_self_test.marina": (
+        "The isolator on my boat seems to send a test current that trips your device. The boat stays unplugged until a technician has "
+        "changed it."
+    ),
+    "cause.isolator_self_test.confirm": (
+        "A technician logs the leakage: brief pulses, evenly spaced, that end when the isolator's monitor has no power."
+    ),
+    "cause.transformer_primary_leak.title": "The isolation transformer leaks on the dock's side",
+    "cause.transformer_primary_leak.lead": (
+        "The boat's isolation transformer leaks from its input winding to its shield or case. It leaks even with every load aboard off."
+    ),
+    "cause.transformer_primary_leak.tonight": (*_LETHAL_TONIGHT, "Keep hands off the transformer's case."),
+    "cause.transformer_primary_leak.remedy": (
+        "A technician tests the transformer and replaces it if the winding leaks.",
+        "Until then the boat stays unplugged.",
+    ),
+    "cause.transformer_primary_leak.marina": (
+        "My boat's isolation transformer seems to leak on your side of it. The boat stays unplugged until a technician has tested it."
+    ),
+    "cause.transformer_primary_leak.confirm": (
+        "A technician tests from the input winding to shield and case, cord out: insulation far below 1 megohm confirms it."
+    ),
+    "cause.drive_leakage.title": "A variable-speed motor leaks at high frequency",
+    "cause.drive_leakage.lead": (
+        "Some air conditioners and pumps change speed by switching very fast. That sends quick pulses to ground (earth). Some devices "
+        "take them for a leak, and some clamps do not show them."
+    ),
+    "cause.drive_leakage.tonight": (_UNPLUGGED, _NO_SWIM, "Leave the air conditioner and variable-speed pumps off."),
+    "cause.drive_leakage.remedy": (
+        "A technician reads the leakage with a meter that shows fast pulses.",
+        "A filter made for that drive, or another unit, cures it.",
+        "The device itself stays in use.",
+    ),
+    "cause.drive_leakage.marina": (
+        "A variable-speed unit aboard seems to trip your device. The boat stays unplugged until a technician has fitted a filter."
+    ),
+    "cause.drive_leakage.confirm": (
+        "A technician reads the leakage twice, with a 50/60 Hz filter and with none: a large gap between the two confirms it."
+    ),
+    "cause.rectified_leakage.title": "Direct current leaks and dulls the device",
+    "cause.rectified_leakage.lead": (
+        "A fault in a charger or power unit leaks direct current. That can dull the device that should watch over you, so it may not "
+        "open when it must."
+    ),
+    "cause.rectified_leakage.tonight": (
+        *_LETHAL_TONIGHT,
+        "Do not trust a device that holds. It may be dulled.",
+        "Leave chargers and power units off.",
+    ),
+    "cause.rectified_leakage.remedy": (
+        "A technician finds the unit that leaks direct current and replaces it.",
+        "Then the dock device is tested by its TEST button and by the marina's electrician.",
+    ),
+    "cause.rectified_leakage.marina": (
+        "A unit on my boat may leak direct current, which can dull your device so that it does not open. The boat is unplugged. "
+        "Please have that device tested."
+    ),
+    "cause.rectified_leakage.confirm": (
+        "A technician clamps the live wires with a clamp that shows direct current: a steady reading that goes with one unit confirms it."
+    ),
+    "cause.cancelling_legs.title": "Two leaks cancel each other",
+    "cause.cancelling_legs.lead": (
+        "Two appliances on different lines both leak. Together the leaks nearly cancel, so it holds. It trips when one of them goes off."
+    ),
+    "cause.cancelling_legs.tonight": (*_LETHAL_TONIGHT, "Do not use the boat with both on just because it holds that way."),
+    "cause.cancelling_legs.remedy": (
+        "Leave both appliances off and out of use.",
+        "A technician tests each line alone and repairs both leaks.",
+    ),
+    "cause.cancelling_legs.marina": (
+        "Two leaks on my boat seem to cancel each other, so your device sees little of them. The boat stays unplugged until both "
+        "are repaired."
+    ),
+    "cause.cancelling_legs.confirm": (
+        "A technician reads the leakage with only one line's loads on, then only the other's: each alone is far above both together."
+    ),
+    "cause.inverter_common_neutral.title": "The inverter's neutrals share one bar",
+    "cause.inverter_common_neutral.lead": (
+        "An inverter joins neutral and ground (earth) on its output side. Aboard, its output and its input share one neutral bar, so "
+        "that joint reaches the dock's neutral too."
+    ),
+    "cause.inverter_common_neutral.tonight": (*_LETHAL_TONIGHT, "Use the inverter only with the shore cord out and the inlet covered."),
+    "cause.inverter_common_neutral.remedy": (
+        "A technician gives the inverter's output a neutral bar of its own.",
+        "Then neutral to ground (earth) is read again with the inverter out of circuit.",
+    ),
+    "cause.inverter_common_neutral.marina": (
+        "The neutrals of my boat's inverter seem to be joined, so current runs in the ground (earth) and the water. The boat stays "
+        "unplugged until a technician has parted them."
+    ),
+    "cause.inverter_common_neutral.confirm": (
+        "A technician reads neutral to ground (earth), all sources locked out: low with the inverter wired in, open with it wired out."
+    ),
+    "cause.generator_bond.title": "The generator keeps neutral and ground joined",
+    "cause.generator_bond.lead": (
+        "A generator joins neutral and ground (earth) for its own power. If the switch between shore and generator leaves the neutrals "
+        "together, that joint stays in place on shore power."
+    ),
+    "cause.generator_bond.tonight": _LETHAL_TONIGHT,
+    "cause.generator_bond.remedy": (
+        "A technician fits a transfer switch that switches the neutral along with the lines.",
+        "The generator keeps its own joint, and the ground (earth) wires stay connected.",
+    ),
+    "cause.generator_bond.marina": (
+        "My boat's generator seems to join neutral and ground (earth) while on shore power. The boat stays unplugged until a technician "
+        "has changed the switch."
+    ),
+    "cause.generator_bond.confirm": (
+        "A technician reads neutral to ground (earth) on the shore side, all sources locked out: low, and open once the generator's "
+        "neutral is off its terminal."
+    ),
+    "cause.transformer_bypassed.title": "The isolation transformer is wired around",
+    "cause.transformer_bypassed.lead": (
+        "Someone has wired the boat straight to the dock, past its isolation transformer. The joint of neutral and ground (earth) that "
+        "belongs behind the transformer is now tied to the dock."
+    ),
+    "cause.transformer_bypassed.tonight": _LETHAL_TONIGHT,
+    "cause.transformer_bypassed.remedy": (
+        "A technician wires the transformer as its maker drew it.",
+        "If it stays out for good, neutral and ground (earth) are parted aboard.",
+    ),
+    "cause.transformer_bypassed.marina": (
+        "My boat's isolation transformer seems to be wired around, so current runs in the ground (earth) and the water. The boat stays "
+        "unplugged until a technician has put it right."
+    ),
+    "cause.transformer_bypassed.confirm": (
+        "A technician reads ohms from a line pin of the cord to the boat's line bus, all sources locked out: straight through confirms it."
+    ),
+    "cause.soft_neutral_leak.title": "A damp path from neutral to ground",
+    "cause.soft_neutral_leak.lead": (
+        "Damp or salt joins neutral and ground (earth) a little, not firmly. It lets little pass at home, and more under heavy load "
+        "or at other docks."
+    ),
+    "cause.soft_neutral_leak.tonight": (_UNPLUGGED, _NO_SWIM, _TELL),
+    "cause.soft_neutral_leak.remedy": (
+        "A technician finds the damp spot, dries it, and renews what is corroded.",
+        "Then neutral to ground (earth) is read again.",
+    ),
+    "cause.soft_neutral_leak.marina": (
+        "Damp seems to join neutral and ground (earth) a little on my boat. The boat stays unplugged until a technician has dried it."
+    ),
+    "cause.soft_neutral_leak.confirm": (
+        "A technician reads neutral to ground (earth) aboard, all sources locked out: between about 5 ohms and 10 kilohms confirms it."
+    ),
+    "cause.dock_bond.title": "Neutral and ground are joined in the dock's own wiring",
+    "cause.dock_bond.lead": (
+        "Neutral and ground (earth) meet in a dock post, where they must not. Part of the dock's current runs home in the ground wire "
+        "and the water. The device of the whole dock sees it, and your own does not."
+    ),
+    "cause.dock_bond.tonight": (*_LETHAL_TONIGHT, "Keep people away from that post. Stray current may run in it."),
+    "cause.dock_bond.remedy": (
+        "Nothing aboard cures this.",
+        "The marina's electrician finds where the two meet and parts them.",
+        "The ground (earth) wire itself stays connected.",
+    ),
+    "cause.dock_bond.marina": (
+        "The dock went dark while my own breaker held. Neutral and ground (earth) may be joined in a post. People in the water are at "
+        "risk. Please send your electrician."
+    ),
+    "cause.dock_bond.confirm": (
+        "The marina's electrician reads volts from neutral to ground (earth) in the post under load: next to zero confirms a joint there."
+    ),
+    "cause.forced_plug.title": "A plug is forced into the wrong outlet",
+    "cause.forced_plug.lead": (
+        "A plug of another kind can be pushed into some outlets with force. Its ground (earth) pin then meets a live line, and the "
+        "boat's metal is live. Touching it, or the water near it, can kill."
+    ),
+    "cause.forced_plug.tonight": (
+        *_LETHAL_TONIGHT,
+        "Turn the dock breaker off first. Touch no metal aboard until the plug is out.",
+        "Do not use that plug or that outlet.",
+    ),
+    "cause.forced_plug.remedy": (
+        "Use only the cord end that was made for this outlet.",
+        "The marina checks the outlet. A technician checks the plug and the boat's wiring.",
+    ),
+    "cause.forced_plug.marina": (
+        "A plug may have been forced into an outlet of another kind, and metal on my boat may have been live. Please cut the power "
+        "of this outlet and have it checked."
+    ),
+    "cause.forced_plug.confirm": "With the dock breaker off, the plug and the outlet are of two kinds, or their blades are marked or bent.",
+    "cause.reversed_polarity.title": "Line and neutral are swapped at the dock",
+    "cause.reversed_polarity.lead": (
+        "Line and neutral have changed places, in the outlet or in a cord. Nothing need trip. But switches aboard now cut the wrong "
+        "wire, so things stay live when they are off."
+    ),
+    "cause.reversed_polarity.tonight": (*_LETHAL_TONIGHT, "Work on nothing aboard that was plugged in, even if it is switched off."),
+    "cause.reversed_polarity.remedy": (
+        "Do not use that outlet.",
+        "The marina's electrician puts the two wires right.",
+        "If other outlets give the same sign, a technician checks the cord and the inlet.",
+    ),
+    "cause.reversed_polarity.marina": (
+        "Line and neutral seem to be swapped in this outlet. Please cut its power and have your electrician check it."
+    ),
+    "cause.reversed_polarity.confirm": (
+        "The marina's electrician reads the outlet: full volts from the neutral slot to ground (earth) confirm it."
+    ),
+    "cause.reversed_with_soft_neutral.title": "Swapped wires ashore bring out a damp spot aboard",
+    "cause.reversed_with_soft_neutral.lead": (
+        "Aboard, damp joins neutral and ground (earth) a little. At home that stays quiet. Here line and neutral are swapped, so the "
+        "damp spot now carries full volts."
+    ),
+    "cause.reversed_with_soft_neutral.tonight": (
+        *_LETHAL_TONIGHT,
+        "Work on nothing aboard that was plugged in, even if it is switched off.",
+    ),
+    "cause.reversed_with_soft_neutral.remedy": (
+        "Both ends need repair.",
+        "A technician finds and dries the damp spot aboard.",
+        "The marina's electrician puts the two wires in the outlet right.",
+    ),
+    "cause.reversed_with_soft_neutral.marina": (
+        "My boat held elsewhere and trips here. Line and neutral may be swapped in this outlet, and something aboard leaks. The boat is "
+        "unplugged. Please have the outlet checked."
+    ),
+    "cause.reversed_with_soft_neutral.confirm": (
+        "A technician reads neutral to ground (earth) aboard, all sources locked out, below about 10 kilohms, and the marina finds the "
+        "outlet swapped."
+    ),
+    "cause.reversed_with_bond.title": "Swapped wires ashore meet joined wires aboard",
+    "cause.reversed_with_bond.lead": (
+        "Line and neutral are swapped ashore. Aboard, neutral is joined to ground (earth). Together that is a dead short, with a bang "
+        "as soon as the power goes on."
+    ),
+    "cause.reversed_with_bond.tonight": (*_LETHAL_TONIGHT, "Nobody turns this outlet on after the bang."),
+    "cause.reversed_with_bond.remedy": (
+        "The marina's electrician puts the two wires in the outlet right and checks it for burns.",
+        "A technician parts neutral and ground (earth) aboard and checks cord and inlet for burns.",
+        "Both must be done before power.",
+    ),
+    "cause.reversed_with_bond.marina": (
+        "There was a bang when my boat got power. Line and neutral may be swapped in this outlet. Please cut its power and have it checked."
+    ),
+    "cause.reversed_with_bond.confirm": (
+        "The marina finds the outlet swapped, and a technician reads under about 5 ohms from neutral to ground (earth) aboard, all "
+        "sources locked out."
+    ),
+    "cause.crossed_neutral.title": "A load on one inlet returns to the other",
+    "cause.crossed_neutral.lead": (
+        "The boat has two inlets. One load takes its power from the first and sends it back to the second. Each dock breaker sees half "
+        "a pair, but only while that load runs."
+    ),
+    "cause.crossed_neutral.tonight": (
+        *_LETHAL_TONIGHT,
+        "Turn off the main and both dock breakers. Then take both cords out. Use neither of them.",
+    ),
+    "cause.crossed_neutral.remedy": (
+        "A technician moves that load's neutral to its own panel.",
+        "Until that is done, neither cord is used.",
+    ),
+    "cause.crossed_neutral.marina": (
+        "One load on my boat seems to return by the wrong cord. Both cords are out until a technician has moved its neutral."
+    ),
+    "cause.crossed_neutral.confirm": (
+        "A technician clamps the live wires of both inlets: the whole current of that one load shows in each, equal and opposite."
+    ),
+    "cause.shared_neutral_branch.title": "Two circuits share a neutral, and one device watches",
+    "cause.shared_neutral_branch.lead": (
+        "Two circuits aboard share one neutral wire. Only one of them has a device, so it sees current come back that it never saw go out."
+    ),
+    "cause.shared_neutral_branch.tonight": (_UNPLUGGED, _NO_SWIM, "Leave both of those circuits off."),
+    "cause.shared_neutral_branch.remedy": (
+        "A technician gives each circuit its own neutral, or one two-pole device for both.",
+        "Then TEST and each load are tried again.",
+    ),
+    "cause.shared_neutral_branch.marina": (
+        "Two circuits on my boat seem to share a neutral and trip a device aboard. The boat stays unplugged until a technician has "
+        "parted them."
+    ),
+    "cause.shared_neutral_branch.confirm": "A technician loads only the other circuit: the device trips with nothing on its own.",
+    "cause.shared_outlet_neutral.title": "Two outlets of the dock post share a neutral",
+    "cause.shared_outlet_neutral.lead": (
+        "In the dock post the neutrals of two outlets are joined or swapped. Each device sees the current of the other outlet come home. "
+        "Any boat trips it."
+    ),
+    "cause.shared_outlet_neutral.tonight": (*_LETHAL_TONIGHT, "Do not use any outlet on that post."),
+    "cause.shared_outlet_neutral.remedy": (
+        "Nothing aboard cures this.",
+        "The marina's electrician gives each outlet its own neutral and tests both devices.",
+    ),
+    "cause.shared_outlet_neutral.marina": (
+        "Two outlets on this post seem to share a neutral, so each trips on the other's load. Please turn both off and send your "
+        "electrician."
+    ),
+    "cause.shared_outlet_neutral.confirm": (
+        "The marina's electrician loads one outlet alone: the clamp around its live wires reads the load, and the other reads the same."
+    ),
+    "cause.open_ground.title": "The ground wire is broken",
+    "cause.open_ground.lead": (
+        "The ground (earth) wire no longer reaches the dock. Nothing trips or shows it. The next leak makes the boat's metal live."
+    ),
+    "cause.open_ground.tonight": (
+        *_LETHAL_TONIGHT,
+        "Turn the dock breaker off before anyone touches metal aboard or steps off.",
+        "Nobody touches the ladder, the engine or the taps until the boat is unplugged.",
+    ),
+    "cause.open_ground.remedy": (
+        "The boat stays unplugged until the ground (earth) wire is whole.",
+        "A technician finds the break in the cord, the inlet or the boat.",
+        "The marina checks the ground in its outlet.",
+    ),
+    "cause.open_ground.marina": (
+        "The ground (earth) between my boat and your post may be broken. The boat is unplugged. Please check your outlet and keep "
+        "people out of the water."
+    ),
+    "cause.open_ground.confirm": (
+        "A technician reads from the cord's ground (earth) pin to the boat's ground bus, cord out and sources locked out: open on "
+        "ohms, and on the diode range both ways, confirms it."
+    ),
+    "cause.open_neutral.title": "The neutral is broken",
+    "cause.open_neutral.lead": (
+        "The neutral wire no longer reaches the dock. Where two lines come aboard, some things get far too many volts and others too "
+        "few. Lamps go very bright or dim. That can start a fire."
+    ),
+    "cause.open_neutral.tonight": (
+        *_LETHAL_TONIGHT,
+        "Turn the dock breaker off at once. Use nothing that was plugged in.",
+        "Smell and look for anything hot before you leave the boat alone.",
+    ),
+    "cause.open_neutral.remedy": (
+        "The boat stays unplugged until the neutral is whole.",
+        "The marina's electrician checks the outlet and its feed.",
+        "A technician checks the cord, the inlet and the panel, and what the wrong volts may have harmed.",
+    ),
+    "cause.open_neutral.marina": (
+        "Lights on my boat went very bright or dim. The neutral may be broken in your outlet or in my cord. Please cut the power of "
+        "this outlet and have it checked."
+    ),
+    "cause.open_neutral.confirm": (
+        "A trained person reads ohms through the cord, unplugged at both ends: neutral open confirms it. Else the marina's electrician "
+        "checks the outlet under load."
+    ),
+    "cause.wet_feeder.title": "The dock's own cable is wet or damaged",
+    "cause.wet_feeder.lead": (
+        "Water or damage in the dock's cable lets current leak before it reaches any outlet. The device of the whole dock opens, and "
+        "yours does not. It comes with rain, tide or wakes."
+    ),
+    "cause.wet_feeder.tonight": (*_LETHAL_TONIGHT, "Keep people off that part of the dock until its power is cut."),
+    "cause.wet_feeder.remedy": (
+        "Nothing aboard cures this.",
+        "The marina's electrician cuts the dock's power, then tests and repairs its cable and posts.",
+    ),
+    "cause.wet_feeder.marina": (
+        "The whole dock goes dark while my own breaker holds. Its cable may be wet or damaged. Please cut its power, keep people out of "
+        "the water, and send your electrician."
+    ),
+    "cause.wet_feeder.confirm": (
+        "The marina's electrician tests the dock's cable with every boat unplugged: low insulation to ground (earth) confirms it."
+    ),
+    "cause.other_loads_on_device.title": "Something else hangs on the same device",
+    "cause.other_loads_on_device.lead": (
+        "Your outlet shares its device with something else: another outlet, a dock lamp, a pump, a boat. That other thing leaks, and you "
+        "lose power with it."
+    ),
+    "cause.other_loads_on_device.tonight": (*_LETHAL_TONIGHT, "Touch nothing else that is fed from that post."),
+    "cause.other_loads_on_device.remedy": (
+        "Ask the marina what else is on that device.",
+        "The marina's electrician tests each thing on it and repairs the one that leaks.",
+        "Each outlet for a boat gets a device of its own.",
+    ),
+    "cause.other_loads_on_device.marina": (
+        "My outlet trips at times with nothing of mine in it. What else is on its device? Please have your electrician test all of it."
+    ),
+    "cause.other_loads_on_device.confirm": (
+        "The marina's electrician takes the other loads off that device: with your outlet empty it holds, and trips when they return."
+    ),
+    "cause.foreign_current.title": "Current from elsewhere runs through the boat",
+    "cause.foreign_current.lead": (
+        "Current from another boat or from the dock gets into the water, enters your hull and runs home in your ground (earth) wire. Your "
+        "own devices cannot see it."
+    ),
+    "cause.foreign_current.tonight": (*_LETHAL_TONIGHT, "Keep everyone out of the water along the whole dock."),
+    "cause.foreign_current.remedy": (
+        "The marina's electrician finds the boat or cable that the current comes from.",
+        "A technician checks that your own boat adds nothing to it.",
+    ),
+    "cause.foreign_current.marina": (
+        "Current that is not mine seems to run through my hull and ground (earth) wire. Someone's boat or your dock leaks into the water. "
+        "Please keep people out and send your electrician."
+    ),
+    "cause.foreign_current.confirm": (
+        "A technician clamps the whole cord, then its ground (earth) wire: both read the same, while the live wires together read next to "
+        "nothing."
+    ),
+    "cause.data_cable_path.title": "A data or TV cable ties the boat to the shore",
+    "cause.data_cable_path.lead": (
+        "The shield of a TV, phone or network cable joins the boat's ground (earth) to the shore a second time. Stray current can "
+        "take that way."
+    ),
+    "cause.data_cable_path.tonight": (
+        _UNPLUGGED,
+        _NO_SWIM,
+        "Once the boat is unplugged, pull every TV, phone and network cable to the shore.",
+    ),
+    "cause.data_cable_path.remedy": (
+        "Use no metal cable to the shore but the shore cord. Radio links or glass fibre do the rest.",
+        "If such a cable must stay, a technician fits an isolating coupler in it.",
+    ),
+    "cause.data_cable_path.marina": (
+        "A TV or network cable seems to carry stray current between my boat and your dock. I have pulled it. Please check its outlet."
+    ),
+    "cause.data_cable_path.confirm": "A technician clamps that cable while the boat has power: more than a few milliamps confirms it.",
+    "cause.second_inlet_live.title": "The pins of an unused inlet are live",
+    "cause.second_inlet_live.lead": (
+        "The boat has a second inlet that nobody uses, and it hangs on the same wires. Its bare pins are live while the boat has "
+        "power. Touching them can kill."
+    ),
+    "cause.second_inlet_live.tonight": (*_LETHAL_TONIGHT, "Keep hands and faces away from every open inlet. Warn all who come aboard."),
+    "cause.second_inlet_live.remedy": (
+        "The boat stays unplugged until this is done.",
+        "A technician fits a switch that lets only one inlet feed the boat at a time.",
+    ),
+    "cause.second_inlet_live.marina": (
+        "The pins of an unused inlet on my boat may be live. The boat is unplugged. Please keep people from plugging it in."
+    ),
+    "cause.second_inlet_live.confirm": (
+        "A technician reads ohms from inlet to inlet, both cords out and sources locked out: line through to line confirms it."
+    ),
+    "cause.device_locked_out.title": "The dock device has worn out and stays off",
+    "cause.device_locked_out.lead": (
+        "Some devices test themselves and shut for good at the end of their life. This one opens, or stays off, with nothing plugged in."
+    ),
+    "cause.device_locked_out.tonight": (_UNPLUGGED, _NO_SWIM, _TELL),
+    "cause.device_locked_out.remedy": (
+        "Leave it off. Do not use that outlet.",
+        "The marina's electrician replaces it with the same kind and rating.",
+    ),
+    "cause.device_locked_out.marina": (
+        "The ground-fault device on this post will not stay on, with nothing plugged in. Please have it replaced with the same kind."
+    ),
+    "cause.device_locked_out.confirm": (
+        "The marina's electrician tests the outlet with its wires off the device: they test well, and the device still does not close."
+    ),
+    "cause.surge.title": "A pulse from lightning or the grid",
+    "cause.surge.lead": (
+        "Lightning or switching in the grid sends a pulse along the dock. It lasts no time, and many devices open at once. The same "
+        "pulse may have harmed something."
+    ),
+    "cause.surge.tonight": (_UNPLUGGED, _NO_SWIM, _TELL),
+    "cause.surge.remedy": (
+        "Ask at the next posts: did they trip at the same moment?",
+        "The marina tests its devices with TEST before boats are plugged in.",
+        "A technician checks chargers and electronics after a near strike.",
+    ),
+    "cause.surge.marina": (
+        "My power tripped in a storm or a power dip. Did other posts trip too? Please test your devices before you turn them on."
+    ),
+    "cause.surge.confirm": "The marina's log shows that many posts opened in the same minute. No test on the boat can show it afterwards.",
+    "cause.uncoordinated_devices.title": "One hard fault darkens the whole dock",
+    "cause.uncoordinated_devices.lead": (
+        "A boat has a hard fault. The device of the whole dock sees it as well, and it is as quick as the one at the outlet. So the whole "
+        "dock can go dark for one boat."
+    ),
+    "cause.uncoordinated_devices.tonight": (*_LETHAL_TONIGHT, "Leave every load aboard off."),
+    "cause.uncoordinated_devices.remedy": (
+        "A technician finds the hard fault aboard.",
+        "The marina's electrician checks that the dock's device waits long enough for the outlet's own.",
+    ),
+    "cause.uncoordinated_devices.marina": (
+        "The whole dock and my own outlet went dark together. My boat may have a hard fault and is unplugged. Please check how your "
+        "devices work together."
+    ),
+    "cause.uncoordinated_devices.confirm": (
+        "Both devices were found open. The marina's electrician compares ratings and delays; a technician tests the boat's insulation."
+    ),
+    "cause.hot_breaker.title": "The breaker or a joint in it gets hot",
+    "cause.hot_breaker.lead": (
+        "A worn breaker or a loose joint makes heat of its own. It opens after minutes, below its rating, and sooner on a hot day. It "
+        "can start a fire."
+    ),
+    "cause.hot_breaker.tonight": (
+        _UNPLUGGED,
+        _NO_SWIM,
+        _TELL,
+        "Turn the breaker off and let plug and outlet cool before the plug is pulled.",
+    ),
+    "cause.hot_breaker.remedy": (
+        "Leave that breaker off.",
+        "The marina's electrician tightens or replaces the breaker and the outlet.",
+        "A plug with brown or melted pins is replaced too.",
+    ),
+    "cause.hot_breaker.marina": (
+        "This breaker opens after minutes at less than its rating. It or the outlet may get hot. Please turn it off and have it checked."
+    ),
+    "cause.hot_breaker.confirm": (
+        "The marina's electrician runs a known load through it: it opens below its rating, and one joint is far warmer than the rest."
+    ),
+    "cause.inrush.title": "A start takes too much current",
+    "cause.inrush.lead": ("A motor or transformer takes many times its normal current as it starts. The breaker opens in that instant."),
+    "cause.inrush.tonight": (
+        "Leave the air conditioner and other large motors off.",
+        _UNPLUGGED,
+        _NO_SWIM,
+    ),
+    "cause.inrush.remedy": (
+        "Before power goes on, turn every load off. Then turn loads on with a pause between them.",
+        "A technician can fit a soft start to the motor or transformer.",
+        "The breaker keeps its rating.",
+    ),
+    "cause.inrush.marina": (
+        "My boat seems to take too much current for a moment when a motor starts. I keep it off until a technician has fitted a soft start."
+    ),
+    "cause.inrush.confirm": (
+        "A technician records the peak current at the start: many times the running current, with the residual near zero."
+    ),
+    "cause.short_circuit.title": "Line and neutral touch",
+    "cause.short_circuit.lead": (
+        "Somewhere line and neutral touch. All the current that the wires can carry flows at once, with a bang or a flash. It can "
+        "start a fire."
+    ),
+    "cause.short_circuit.tonight": (
+        _UNPLUGGED,
+        _NO_SWIM,
+        _TELL,
+        "Nobody turns it on after the bang. Smell and look for anything hot before you leave the boat alone.",
+    ),
+    "cause.short_circuit.remedy": (
+        "Leave everything off.",
+        "A technician finds the place, repairs it, and checks cords and panel for burns.",
+    ),
+    "cause.short_circuit.marina": (
+        "There was a bang when my boat got power, and the breaker opened. The boat is unplugged. Please check the outlet for burns."
+    ),
+    "cause.short_circuit.confirm": (
+        "A technician reads ohms from line to neutral, all loads unplugged and all sources locked out: next to nothing confirms it."
+    ),
+    "cause.low_voltage.title": "Too few volts reach the boat",
+    "cause.low_voltage.lead": (
+        "Long or thin wires, or too many boats on the dock, eat up the volts. Motors then stall or draw more current, and get hot."
+    ),
+    "cause.low_voltage.tonight": (
+        "Leave the air conditioner, fridge and pumps off: few volts can burn their motors.",
+        _UNPLUGGED,
+        _NO_SWIM,
+    ),
+    "cause.low_voltage.remedy": (
+        "Use one cord of the right size, as short as it can be, and no coil of spare cord.",
+        "The marina's electrician reads the volts at the post under load.",
+    ),
+    "cause.low_voltage.marina": (
+        "Too few volts seem to reach my boat, and motors suffer. Please have the volts at this post read when the dock is busy."
+    ),
+    "cause.low_voltage.confirm": (
+        "The boat's own voltmeter falls far as loads go on. A technician compares volts at the post and aboard under the same load."
+    ),
+    "cause.supply_lost.title": "The dock itself has no power",
+    "cause.supply_lost.lead": "Nothing tripped on this boat. The power of the dock or of the whole town is out.",
+    "cause.supply_lost.tonight": (
+        "Turn off the main switch and the breaker on the dock post until the power is back.",
+        _UNPLUGGED,
+        _NO_SWIM,
+    ),
+    "cause.supply_lost.remedy": (
+        "Ask the marina when the power comes back.",
+        "Plug in with every load off, and turn loads on with a pause between them.",
+    ),
+    "cause.supply_lost.marina": "There is no power at my post, and my breakers are on. Is the power of the dock out?",
+    "cause.supply_lost.confirm": "Other posts and the dock's lamps are dark too, and every breaker is still on.",
     "cause.combining_y.title": "The Y with two dock plugs",
     "cause.combining_y.lead": (
         "The Y joins two neutrals. Current goes out by one dock plug and partly comes home by the other, so each breaker "

@@ -1,0 +1,50 @@
+"""Causes that join neutral and ground where they must not meet."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from strayline.boat import panel_of
+from strayline.errors import CaseError
+from strayline.faults import Change, Effect, Fault, Shunt, chain_of, stated_ohms, stated_part
+
+if TYPE_CHECKING:
+    from strayline.network import Network
+    from strayline.parts import Installation
+
+WHILE_WINDOW = ("inverter_settled",)  # a relay's window after plug-in is over in this context
+
+
+def bond_at(*kinds: str) -> Change:
+    """Neutral joined to ground at the load end of a part of these kinds."""
+
+    def bond(installation: Installation, network: Network, fault: Fault) -> Effect:
+        part = stated_part(installation, fault.at, *kinds)
+        return Effect(network, (Shunt("bond", f"{part.id}.N", f"{part.id}.G", stated_ohms(fault), "bond", part.id),))
+
+    return bond
+
+
+def frame_strap(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """The appliance's frame tied to the boat's neutral bus: gone only when the appliance is unplugged."""
+    load = stated_part(installation, fault.at, "load")
+    panel = panel_of(installation, load)
+    return Effect(network, (Shunt("strap", f"{panel.id}.N", f"{load.id}.frame", stated_ohms(fault), "bond", load.id),))
+
+
+def inverter_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """An inverter's own bond: with `spontaneous` 0 it is welded, with 1 it lasts only until shore power is accepted."""
+    panel = stated_part(installation, fault.at, "panel")
+    absent_in = WHILE_WINDOW if fault.spontaneous else ()
+    return Effect(network, (Shunt("relay", f"{panel.id}.N", f"{panel.id}.G", stated_ohms(fault), "bond", panel.id, absent_in),))
+
+
+def soft_neutral_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """Neutral joined to ground through damp, in the panel or at a load's far end."""
+    part = stated_part(installation, fault.at, "panel", "load")
+    neutral, ground = f"{part.id}.N", f"{part.id}.G"
+    if part.kind == "load":
+        if not part.text("across").endswith("-N"):
+            raise CaseError("at", "must be a load with a neutral", part.id)
+        neutral, ground = chain_of(network, part)[-1].to_node, f"{part.id}.frame"
+    return Effect(network, (Shunt("damp", neutral, ground, stated_ohms(fault), "bond", part.id),))
