@@ -193,7 +193,8 @@ SEEN_BY = {
     "crossed_neutral": "PA", "shared_neutral_branch": "", "shared_outlet_neutral": "P", "open_ground_with_leak": "PFA", "open_ground": "",
     "open_neutral": "", "feeder_accumulation": "F", "wet_feeder": "F", "other_loads_on_device": "PF", "foreign_current": "",
     "data_cable_path": "", "second_inlet_live": "", "touchy_device": "", "device_locked_out": "", "surge": "",
-    "uncoordinated_devices": "PFA", "overload": "", "hot_breaker": "", "inrush": "", "short_circuit": "", "low_voltage": "", "supply_lost": "", "nothing_now": "",
+    "uncoordinated_devices": "PFA", "overload": "", "hot_breaker": "", "inrush": "", "short_circuit": "",
+    "low_voltage": "", "supply_lost": "", "nothing_now": "",
     "combining_y": "P", "joined_inlets": "PA",
 }  # fmt: skip
 WHERE = {
