@@ -168,6 +168,12 @@ CLAUSE_RULES: tuple[Rule, ...] = (
         r"\b(?:in|during|through) (?:a|the) thunderstorm\b",
         r"\b(?:pull|unplug)\b.{0,25}\bunder load\b",
     ),
+    _rule(
+        "powers what is damaged",
+        r"\b(?:turn|switch|put)(?:s|ed)? (?:\S+ ){0,4}?on\b.{0,20}\bafter (?:the|a|that) (?:bang|flash|smell|short)\b",
+        r"\bdr(?:y|ies|ied|ying)\b(?: \S+){0,4} (?:under|on|with|from) (?:the |shore |dock )*(?:power|current)\b",
+        r"\b(?:leave|keep|run) both (?:\S+ )?(?:on|running)\b",
+    ),
     _rule("ignores a warning", r"\b(?:ignore|disregard|overlook|silence)\b"),
     _rule(
         "fumes",
@@ -180,6 +186,7 @@ CLAUSE_RULES: tuple[Rule, ...] = (
 # These cross commas, so they read the whole text; the negation of the clause in which they begin counts.
 TEXT_RULES: tuple[Rule, ...] = (
     _rule("called safe", r"\bno leak(?:age)? now\b(?!, with these loads running)", negatable=False),
+    _rule("powers what is damaged", r"\b(?:run|leave|keep)\b(?: \S+){0,6} until (?:it|they) (?:is|are|has|have) dr(?:y|ied)\b"),
     _rule(
         "one tail of a Y",
         r"(?<=\b(?-i:Y)\b).{0,40}\bone (?:tail|leg|plug|side|end)\b",

@@ -234,6 +234,10 @@ BAD = {
     "Unplug it while it is running.": "handles what is hot or wet",
     "Grab the person at once.": "handles what is hot or wet",
     "Ignore the polarity light.": "ignores a warning",
+    "Turn the outlet on after the bang to see.": "powers what is damaged",
+    "Dry the element out on shore power.": "powers what is damaged",
+    "Run the heater on the dock until it has dried.": "powers what is damaged",
+    "Leave both heaters on, since it holds that way.": "powers what is damaged",
 }
 
 GOOD = (
@@ -256,6 +260,8 @@ GOOD = (
     "The ground (earth) wire is broken.",
     "Turn on one load, wait, and turn it off.",
     "The breaker on the dock post opened.",
+    "Do not try to dry it out on shore power.",
+    "Nobody turns this outlet on after the bang.",
 )
 
 
