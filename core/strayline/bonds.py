@@ -6,7 +6,8 @@ from typing import TYPE_CHECKING
 
 from strayline.boat import panel_of
 from strayline.errors import CaseError
-from strayline.faults import Change, Effect, Fault, Shunt, chain_of, stated_ohms, stated_part
+from strayline.faults import Change, Effect, Fault, Shunt, chain_of, own_panel, stated_ohms, stated_part
+from strayline.network import without_branches
 
 if TYPE_CHECKING:
     from strayline.network import Network
@@ -34,9 +35,32 @@ def frame_strap(installation: Installation, network: Network, fault: Fault) -> E
 
 def inverter_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
     """An inverter's own bond: with `spontaneous` 0 it is welded, with 1 it lasts only until shore power is accepted."""
-    panel = stated_part(installation, fault.at, "panel")
+    part = stated_part(installation, fault.at, "panel", "inverter")
     absent_in = WHILE_WINDOW if fault.spontaneous else ()
-    return Effect(network, (Shunt("relay", f"{panel.id}.N", f"{panel.id}.G", stated_ohms(fault), "bond", panel.id, absent_in),))
+    return Effect(network, (Shunt("relay", f"{part.id}.N", f"{part.id}.G", stated_ohms(fault), "bond", part.id, absent_in),))
+
+
+def generator_bond(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """A drawn generator's neutral, bond and all, on the shore's neutral; at a panel, the bond that comes of it."""
+    part = stated_part(installation, fault.at, "panel", "generator")
+    if part.kind == "panel":
+        return bond_at("panel")(installation, network, fault)
+    switch = next((one for one in installation.of_kind("transfer") if part.id in one.parents), own_panel(installation))
+    shore = next(parent for parent in switch.parents if parent != part.id)
+    return Effect(network, (Shunt("neutrals", f"{shore}.N", f"{part.id}.N", stated_ohms(fault), "neutral", part.id),))
+
+
+def transformer_bypassed(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """Input and output of a drawn transformer strapped, its bond left in; at a panel, the bond that comes of it."""
+    part = stated_part(installation, fault.at, "panel", "transformer")
+    if part.kind == "panel":
+        return bond_at("panel")(installation, network, fault)
+    out = without_branches(network, lambda branch: branch.owner == part.id and branch.kind == "winding")
+    straps = (("L1", "line"), ("N", "neutral"), ("G", "protective"))
+    ohms = stated_ohms(fault)
+    return Effect(
+        out, tuple(Shunt(f"strap.{end}", f"{part.parents[0]}.{end}", f"{part.id}.{end}", ohms, kind, part.id) for end, kind in straps)
+    )
 
 
 def soft_neutral_leak(installation: Installation, network: Network, fault: Fault) -> Effect:

@@ -11,7 +11,7 @@ from __future__ import annotations
 import dataclasses
 from typing import TYPE_CHECKING
 
-from strayline.bonds import bond_at, frame_strap, inverter_bond, soft_neutral_leak
+from strayline.bonds import bond_at, frame_strap, generator_bond, inverter_bond, soft_neutral_leak, transformer_bypassed
 from strayline.catalogue.causes import CAUSE
 from strayline.errors import CaseError
 from strayline.faults import Change, Effect, Fault, Shunt
@@ -28,6 +28,7 @@ from strayline.leaks import (
     load_filter,
     rectified_leakage,
     summed_filters,
+    transformer_primary_leak,
 )
 from strayline.miswirings import (
     EXCHANGEABLE,
@@ -90,16 +91,16 @@ _EFFECTS: dict[str, Change] = {
     "surge_suppressor": circuit_leak,
     "cycling_appliance": appliance_leak,
     "isolator_self_test": isolator_self_test,
-    "transformer_primary_leak": line_to_ground("transformer"),
+    "transformer_primary_leak": transformer_primary_leak,
     "drive_leakage": load_filter,
     "rectified_leakage": rectified_leakage,
     "cancelling_legs": cancelling_legs,
     "panel_bond": bond_at("panel"),
     "frame_strap": frame_strap,
     "inverter_bond": inverter_bond,
-    "inverter_common_neutral": bond_at("panel"),
-    "generator_bond": bond_at("panel"),
-    "transformer_bypassed": bond_at("panel"),
+    "inverter_common_neutral": bond_at("panel", "inverter"),
+    "generator_bond": generator_bond,
+    "transformer_bypassed": transformer_bypassed,
     "soft_neutral_leak": soft_neutral_leak,
     "dock_bond": bond_at("pedestal"),
     "ground_neutral_exchanged": exchanged("neutral", "protective", *EXCHANGEABLE),

@@ -89,6 +89,13 @@ def line_to_ground(*kinds: str) -> Change:
     return wet
 
 
+def transformer_primary_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
+    """From the line to the protective conductor on the shore's side of a transformer, where its shield is tied."""
+    part = stated_part(installation, fault.at, "transformer")
+    shore = part.parents[0]
+    return Effect(network, (Shunt("leak", f"{shore}.L1", f"{shore}.G", stated_ohms(fault), "leak", part.id),))
+
+
 def circuit_leak(installation: Installation, network: Network, fault: Fault) -> Effect:
     """From the line of one circuit to ground, behind its breaker; at a panel, from its first line."""
     part = stated_part(installation, fault.at, "breaker", "panel")

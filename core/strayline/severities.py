@@ -131,7 +131,8 @@ def _frame_strap(boat: _Boat, cause: str) -> list[Fault]:
 
 
 def _inverter_bond(boat: _Boat, cause: str) -> list[Fault]:
-    return [Fault(cause, at=part.id, ohms=0.05, spontaneous=window) for part in boat.of("panel")[:1] for window in (0.0, 1.0)]
+    places = (boat.of("inverter") or boat.of("panel"))[:1]
+    return [Fault(cause, at=part.id, ohms=0.05, spontaneous=window) for part in places for window in (0.0, 1.0)]
 
 
 def _exchanged(places: int) -> Callable[[_Boat, str], list[Fault]]:
@@ -238,12 +239,11 @@ def _cancelling_legs(boat: _Boat, cause: str) -> list[Fault]:
     return [Fault(cause, at=one.id, load=other.id, ohms=ohms) for one, other in pairs[:1] for ohms in boat.at_ma(35, 60, 150)]
 
 
-def _generator_bond(boat: _Boat, cause: str) -> list[Fault]:
-    return [Fault(cause, at=part.id, ohms=ohms) for part in (boat.of("generator") or boat.of("panel"))[:1] for ohms in (0.02, 0.2)]
-
-
-def _transformer_bypassed(boat: _Boat, cause: str) -> list[Fault]:
-    return [Fault(cause, at=part.id, ohms=ohms) for part in (boat.of("transformer") or boat.of("panel"))[:1] for ohms in (0.02, 0.2)]
+def _bonded_at(kind: str) -> Callable[[_Boat, str], list[Fault]]:
+    """At the drawn part of this kind, else at the panel, where its bond would come to lie."""
+    return lambda boat, cause: [
+        Fault(cause, at=part.id, ohms=ohms) for part in (boat.of(kind) or boat.of("panel"))[:1] for ohms in (0.02, 0.2)
+    ]
 
 
 def _dock_bond(boat: _Boat, cause: str) -> list[Fault]:
@@ -373,9 +373,9 @@ _GRIDS: dict[str, Callable[[_Boat, str], list[Fault]]] = {
     "drive_leakage": _drive_leakage,
     "rectified_leakage": _rectified_leakage,
     "cancelling_legs": _cancelling_legs,
-    "inverter_common_neutral": _at_panel(0.02, 0.2),
-    "generator_bond": _generator_bond,
-    "transformer_bypassed": _transformer_bypassed,
+    "inverter_common_neutral": _bonded_at("inverter"),
+    "generator_bond": _bonded_at("generator"),
+    "transformer_bypassed": _bonded_at("transformer"),
     "soft_neutral_leak": _at_panel(8.0, 40.0, 200.0),
     "dock_bond": _dock_bond,
     "forced_plug": _forced_plug,
