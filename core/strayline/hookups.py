@@ -99,28 +99,18 @@ def kit(installation: Installation) -> Kit:
 
 
 def _aboard(installation: Installation) -> frozenset[str]:
-    """The fixed parts of the boat, and of no other: all that hangs together without cords, adapters or the dock."""
+    """The fixed parts of the boat, and of no other: all that hangs together without the dock, by her own cords too."""
     panels = installation.of_kind("panel") or installation.of_kind("inlet")
     if not panels:
         return frozenset()
-    found = _connected_aboard(installation, panels[0].id, (*LOOSE_ENDS, "receptacle", *ASHORE))
-    # A boat with two panels and nothing between them is one boat when its own cords hang on one adapter.
-    return frozenset(
-        part_id
-        for part_id in _connected_aboard(installation, panels[0].id, ("receptacle", *ASHORE))
-        if part_id in found or installation.part(part_id).kind not in LOOSE_ENDS
-    )
-
-
-def _connected_aboard(installation: Installation, start: str, beyond: tuple[str, ...]) -> set[str]:
-    found, waiting = {start}, [start]
+    found, waiting = {panels[0].id}, [panels[0].id]
     while waiting:
         part = installation.part(waiting.pop())
         near = [*installation.children(part.id), *(installation.part(base(parent)) for parent in part.parents if parent)]
-        new = [one.id for one in near if one.kind not in beyond and one.id not in found]
+        new = [one.id for one in near if one.kind not in ("receptacle", *ASHORE) and one.id not in found]
         found.update(new)
         waiting += new
-    return found
+    return frozenset(part_id for part_id in found if installation.part(part_id).kind not in LOOSE_ENDS)
 
 
 def _has_own_plug(part: Part, installation: Installation) -> bool:
