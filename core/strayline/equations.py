@@ -1,7 +1,8 @@
 """The equations of a network: which voltages and currents are unknown, the matrix between them, and what a reading weighs.
 
-Unknowns are the voltages of the nodes and the currents of those branches that a sensor encloses, that hold an emf, or that are below
-`CURRENT_BELOW_OHMS`; every other branch is an admittance. A current unknown's row says V(from) - V(to) - Z * I = -emf. A reading is
+Unknowns are the voltages of the nodes and the currents of those branches that a sensor encloses, that hold an emf, that are coupled, or
+that are below `CURRENT_BELOW_OHMS`; every other branch is an admittance. A current unknown's row says V(from) - V(to) - Z * I = -emf, where
+windings on one core add -j omega M times each other's current; the matrix stays symmetric. A reading is
 thus a current the solve itself gave, never a small voltage divided by a small impedance, and no entry of a branch exceeds one in size.
 
 An island with no connection to the reference has one node tied to it. The tie carries no current, because nothing else connects, and
@@ -50,10 +51,11 @@ class Equations:
         self.ties = tuple(name for name in self.floating if self._islands[name] == name)
         free = [name for name in names if self._islands[name] != name]
         self._nodes = {**dict.fromkeys(names, -1), **{name: place for place, name in enumerate(free)}}
-        enclosed = {branch_id for sensor in network.sensors for branch_id in sensor.branches}
+        counted = {branch_id for sensor in network.sensors for branch_id in sensor.branches}
+        counted.update(winding for each in network.couplings for winding in (each.one, each.other))
         self._branches = {branch.id: branch for branch in network.branches}
         flows = [
-            branch.id for branch in network.branches if branch.id in enclosed or branch.emf or abs(branch.impedance) < CURRENT_BELOW_OHMS
+            branch.id for branch in network.branches if branch.id in counted or branch.emf or abs(branch.impedance) < CURRENT_BELOW_OHMS
         ]
         self._flows = {branch_id: len(free) + place for place, branch_id in enumerate(flows)}
 
@@ -69,6 +71,9 @@ class Equations:
                 _stamp_admittance(rows, a, b, 1 / branch.impedance)
             else:
                 _stamp_current(rows, a, b, flow, branch.impedance)
+        for each in self.network.couplings:
+            one, other = self._flows[each.one], self._flows[each.other]
+            rows[one][other] = rows[other][one] = -each.impedance
         try:
             return eliminate(rows, potentials)
         except SingularError as singular:

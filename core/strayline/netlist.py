@@ -43,6 +43,10 @@ def netlist(network: Network, title: str) -> str:
             lines.append(element.format(near=near, far=inner))
             near, inner = inner, inner + 1
         lines.append(elements[-1].format(near=near, far=numbers[branch.to_node]))
+    for number, each in enumerate(network.couplings, 1):
+        one, other = places[each.one], places[each.other]
+        perfect = math.sqrt(network.branch(each.one).impedance.imag * network.branch(each.other).impedance.imag)
+        lines.append(f"k{number} l{one} l{other} {each.impedance.imag / perfect!r}")
     ties = Equations(network).ties
     if ties:
         lines.append("* one node of each floating island is tied to the reference; the tie carries no current")

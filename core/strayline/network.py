@@ -1,12 +1,13 @@
 """The circuit as data: branches between named nodes, the windows of the devices that watch them, and the rules a circuit must keep.
 
-Everything here is frozen. A change is a new Network made by `with_branches`, `without_branches` or `replaced`, and a Network is its own
-cache key.
+Everything here is frozen. A change is a new Network made by `with_branches`, `without_branches` or `replaced`, or by
+`dataclasses.replace`, and a Network is its own cache key.
 """
 
 from __future__ import annotations
 
 import cmath
+import dataclasses
 import math
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
@@ -59,8 +60,30 @@ class Blade:
 
 
 @dataclass(frozen=True, slots=True)
+class Coupling:
+    """Two windings on one core: each one's voltage drop V(from) - V(to) gains `impedance` times the other's current.
+
+    `impedance` is j omega M in ohms, M > 0; which way a winding is wound is told by the order of its own two nodes. Coupled windings
+    are not connected: no current passes from one to the other.
+    """
+
+    one: str
+    other: str
+    impedance: complex
+
+
+@dataclass(frozen=True, slots=True)
+class Isolator:
+    """A galvanic isolator: the protective branch as built blocks; above `volts` RMS across it, it conducts with `conducting` ohms."""
+
+    branch: str
+    volts: float
+    conducting: float
+
+
+@dataclass(frozen=True, slots=True)
 class Network:
-    """A linear AC circuit at one frequency in hertz; voltages are counted from the node `reference`.
+    """A circuit at one frequency in hertz, linear but for its isolators; voltages are counted from the node `reference`.
 
     `hulls` pairs a boat's id with the node of its hull. Equal networks hash equal, and the hash is worked out once.
     """
@@ -71,17 +94,22 @@ class Network:
     sensors: tuple[Sensor, ...] = ()
     blades: tuple[Blade, ...] = ()
     hulls: tuple[tuple[str, str], ...] = ()
+    couplings: tuple[Coupling, ...] = ()
+    isolators: tuple[Isolator, ...] = ()
     _hash: int | None = field(default=None, init=False, repr=False, compare=False)
 
     def __hash__(self) -> int:
         if self._hash is None:
-            parts = (self.hertz, self.reference, self.branches, self.sensors, self.blades, self.hulls)
-            object.__setattr__(self, "_hash", hash(parts))  # frozen to everyone else: this is a memo, not a change
+            object.__setattr__(self, "_hash", hash(self._told()))  # frozen to everyone else: this is a memo, not a change
         return self._hash  # type: ignore[return-value]
 
     def __reduce__(self) -> tuple[type[Network], tuple[object, ...]]:
         # Text hashes differently in every process, so the memo must not travel with a pickled network.
-        return Network, (self.hertz, self.reference, self.branches, self.sensors, self.blades, self.hulls)
+        return Network, self._told()
+
+    def _told(self) -> tuple[object, ...]:
+        """What it was made of."""
+        return self.hertz, self.reference, self.branches, self.sensors, self.blades, self.hulls, self.couplings, self.isolators
 
     def branch(self, branch_id: str) -> Branch:
         """The branch of this id; NetworkError if there is none."""
@@ -116,11 +144,14 @@ def nodes(network: Network) -> tuple[str, ...]:
 
 def with_branches(network: Network, *branches: Branch) -> Network:
     """The network with branches added after its own; no sensor encloses them."""
-    return Network(network.hertz, network.reference, network.branches + branches, network.sensors, network.blades, network.hulls)
+    return dataclasses.replace(network, branches=network.branches + branches)
 
 
 def without_branches(network: Network, unwanted: Callable[[Branch], bool] | Iterable[str]) -> Network:
-    """The network with branches opened: those for which `unwanted(branch)` holds, or those whose id is listed. Sensors lose them too."""
+    """The network with branches opened: those for which `unwanted(branch)` holds, or those whose id is listed.
+
+    Sensors lose them too; a coupling or an isolator goes with its branch.
+    """
     if callable(unwanted):
         gone = frozenset(branch.id for branch in network.branches if unwanted(branch))
     else:
@@ -129,13 +160,12 @@ def without_branches(network: Network, unwanted: Callable[[Branch], bool] | Iter
             raise _broken("no such branch", branch_id)
     if not gone:
         return network
-    return Network(
-        network.hertz,
-        network.reference,
-        tuple(branch for branch in network.branches if branch.id not in gone),
-        tuple(_without(sensor, gone) for sensor in network.sensors),
-        network.blades,
-        network.hulls,
+    return dataclasses.replace(
+        network,
+        branches=tuple(branch for branch in network.branches if branch.id not in gone),
+        sensors=tuple(_without(sensor, gone) for sensor in network.sensors),
+        couplings=tuple(each for each in network.couplings if each.one not in gone and each.other not in gone),
+        isolators=tuple(each for each in network.isolators if each.branch not in gone),
     )
 
 
@@ -148,14 +178,8 @@ def _without(sensor: Sensor, gone: frozenset[str]) -> Sensor:
 def replaced(network: Network, branch: Branch) -> Network:
     """The network in which `branch` stands where the branch of the same id stood."""
     network.branch(branch.id)
-    return Network(
-        network.hertz,
-        network.reference,
-        tuple(branch if old.id == branch.id else old for old in network.branches),
-        network.sensors,
-        network.blades,
-        network.hulls,
-    )
+    branches = tuple(branch if old.id == branch.id else old for old in network.branches)
+    return dataclasses.replace(network, branches=branches)
 
 
 # Consistency rules: each raises NetworkError with the name, the rule and the value
@@ -218,6 +242,33 @@ def check_passive(network: Network) -> None:
             raise _broken("the resistance must not be negative", branch.id, branch.impedance)
 
 
+def check_couplings(network: Network) -> None:
+    """A coupling joins two windings that are there, once, by a mutual inductance above zero and below that of a perfect core."""
+    windings = {branch.id: branch for branch in network.branches if branch.kind == "winding"}
+    seen: set[frozenset[str]] = set()
+    for each in network.couplings:
+        name = f"{each.one} and {each.other}"
+        for winding in (each.one, each.other):
+            if winding not in windings:
+                raise _broken("a coupling needs two windings that are there", winding)
+        if each.one == each.other or frozenset((each.one, each.other)) in seen:
+            raise _broken("coupled twice, or to itself", name)
+        seen.add(frozenset((each.one, each.other)))
+        most = windings[each.one].impedance.imag * windings[each.other].impedance.imag
+        if each.impedance.real or not each.impedance.imag > 0 or not each.impedance.imag**2 < most:
+            raise _broken("the mutual inductance must be above zero and below that of a perfect core", name, each.impedance)
+
+
+def check_isolators(network: Network) -> None:
+    """An isolator stands in a protective conductor that is there, blocks up to some volts and conducts with some ohms."""
+    protective = {branch.id for branch in network.branches if branch.kind == "protective"}
+    for each in network.isolators:
+        if each.branch not in protective:
+            raise _broken("an isolator stands in a protective conductor that is there", each.branch)
+        if not (0 < each.volts < math.inf and 0 < each.conducting < math.inf):
+            raise _broken("an isolator blocks up to some volts and conducts with some ohms", each.branch, (each.volts, each.conducting))
+
+
 def check_two_ends(network: Network) -> None:
     """A branch joins two different nodes."""
     for branch in network.branches:
@@ -268,6 +319,8 @@ RULES: tuple[Callable[[Network], None], ...] = (
     check_finite,
     check_no_zero_ohms,
     check_passive,
+    check_couplings,
+    check_isolators,
     check_two_ends,
     check_reference_exists,
     check_sensor_branches_exist,

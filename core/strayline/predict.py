@@ -199,6 +199,9 @@ class _Prepared:
         for reading, probe in self._readings(installation, network, present):
             self.names.append(reading)
             self.probes.append(probe)
+        stand_in = [(each, network.branch(each.branch)) for each in network.isolators]
+        self.bridges = [(each.volts, (branch.from_node, branch.to_node, complex(each.conducting))) for each, branch in stand_in]
+        self.probes += [solve.probe_voltage(self.factors, a, b) for _, (a, b, _) in self.bridges]
         self.sweep = solve.Sweep(self.factors, self.probes, [watch.id for watch in watched])
         self.continuity = _continuity(installation, self.factors, self.nodes) if context == "cord_in_hand" else {}
         self.seen: dict[tuple[Shunt, ...], Outlook] = {}
@@ -231,7 +234,7 @@ class _Prepared:
         return self.seen[here]
 
     def _outlook(self, shunts: list[solve.Shunt]) -> Outlook:
-        values, loops = self.sweep.at(shunts)
+        values, loops = self._settled(shunts)
         count = len(self.watched)
         residual = tuple(abs(value) for value in values[:count])
         loop = tuple(abs(value) for value in loops)
@@ -247,6 +250,13 @@ class _Prepared:
             )
         readings |= self.continuity
         return Outlook(residual, loop, tuple(line), readings)
+
+    def _settled(self, shunts: list[solve.Shunt]) -> tuple[list[complex], list[complex]]:
+        """Probes and loops with every galvanic isolator bridged whose voltage makes it conduct (room `settle`, over ports)."""
+        values, loops = self.sweep.at(shunts)
+        across = len(values) - len(self.bridges)
+        past = [bridge for (volts, bridge), value in zip(self.bridges, values[across:], strict=True) if abs(value) > volts]
+        return self._settled([*shunts, *past]) if past else (values[:across], loops)
 
 
 def _continuity(installation: Installation, factors: solve.Factors, present: frozenset[str]) -> dict[str, float]:

@@ -11,6 +11,7 @@ from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.parts import Installation, base, read
 from strayline.phasor import angle_deg, shown_angle
+from strayline.settle import settled
 
 if TYPE_CHECKING:
     from collections.abc import Collection
@@ -29,11 +30,11 @@ CROSSING_KINDS = {
 
 
 def stated_network(case: Case) -> tuple[Installation, Network]:
-    """The checked installation of a case, and its network with the stated faults in it."""
+    """The checked installation of a case, and its network with the stated faults in it, its galvanic isolators settled."""
     if case.installation is None:
         raise CaseError("installation", "missing; say what is plugged into what")
     installation = read(case.installation)
-    return installation, applied(installation, build(installation), case.faults)
+    return installation, settled(applied(installation, build(installation), case.faults))
 
 
 def residuals(case: Case) -> dict[str, Any]:

@@ -14,10 +14,14 @@ from strayline.network import (
     RULES,
     Blade,
     Branch,
+    Coupling,
+    Isolator,
     Network,
     Sensor,
+    check_couplings,
     check_finite,
     check_frequency,
+    check_isolators,
     check_kinds,
     check_live_conductors,
     check_no_zero_ohms,
@@ -63,6 +67,23 @@ def windowed(*branches: str) -> Network:
     return replace(GOOD, sensors=(replace(GOOD.sensors[0], branches=branches),))
 
 
+WOUND = replace(
+    GOOD,
+    branches=(
+        *GOOD.branches,
+        Branch("primary", "b.L", "b.N", 0.1 + 100j, "winding", "transformer"),
+        Branch("secondary", "t.L", "t.N", 0.1 + 25j, "winding", "transformer"),
+    ),
+    couplings=(Coupling("primary", "secondary", 49j),),
+    isolators=(Isolator("ground", 0.85, 0.02),),
+)
+
+
+def coupled(*couplings: Coupling) -> Network:
+    """WOUND with other couplings."""
+    return replace(WOUND, couplings=couplings)
+
+
 BROKEN: list[tuple[Callable[[Network], None], Network, str]] = [
     (check_unique_ids, replace(GOOD, branches=(*GOOD.branches, GOOD.branches[1])), "hot"),
     (check_unique_ids, replace(GOOD, sensors=GOOD.sensors * 2), "pedestal"),
@@ -75,6 +96,16 @@ BROKEN: list[tuple[Callable[[Network], None], Network, str]] = [
     (check_finite, changed("supply", emf=complex(0, math.nan)), "supply"),
     (check_no_zero_ohms, changed("back", impedance=0j), "back"),
     (check_passive, changed("heater", impedance=-1 + 5j), "heater"),
+    (check_couplings, coupled(Coupling("primary", "hot", 1j)), "hot"),
+    (check_couplings, coupled(Coupling("ghost", "secondary", 1j)), "ghost"),
+    (check_couplings, coupled(Coupling("primary", "primary", 1j)), "primary and primary"),
+    (check_couplings, coupled(*WOUND.couplings, Coupling("secondary", "primary", 49j)), "secondary and primary"),
+    (check_couplings, coupled(Coupling("primary", "secondary", 50j)), "primary and secondary"),
+    (check_couplings, coupled(Coupling("primary", "secondary", 1 + 4j)), "primary and secondary"),
+    (check_couplings, coupled(Coupling("primary", "secondary", -4j)), "primary and secondary"),
+    (check_isolators, replace(WOUND, isolators=(Isolator("back", 0.85, 0.02),)), "back"),
+    (check_isolators, replace(WOUND, isolators=(Isolator("ground", 0, 0.02),)), "ground"),
+    (check_isolators, replace(WOUND, isolators=(Isolator("ground", 0.85, 0),)), "ground"),
     (check_two_ends, changed("heater", to_node="b.L"), "heater"),
     (check_reference_exists, replace(GOOD, reference="earth"), "earth"),
     (check_sensor_branches_exist, windowed("hot", "back", "third"), "pedestal"),
@@ -105,6 +136,7 @@ def test_every_rule_is_broken_once() -> None:
 def test_a_good_network_passes() -> None:
     """`checked` hands back the very network it was given."""
     assert checked(GOOD) is GOOD
+    assert checked(WOUND) is WOUND
 
 
 def test_zero_ohms_is_said_in_words() -> None:
@@ -127,6 +159,8 @@ def test_equal_networks_are_one_key() -> None:
     assert hash(twin) == hash(GOOD)
     assert {GOOD: 1}[pickle.loads(pickle.dumps(GOOD))] == 1
     assert changed("hot", impedance=0.03) != GOOD
+    assert pickle.loads(pickle.dumps(WOUND)) == WOUND
+    assert coupled() != WOUND
 
 
 def test_nothing_can_be_changed_in_place() -> None:
@@ -150,6 +184,16 @@ def test_opening_a_branch_opens_it_for_its_sensor() -> None:
     assert [branch.id for branch in by_id.branches] == ["supply", "hot", "ground", "heater"]
     assert by_id.sensors == (replace(GOOD.sensors[0], branches=("hot",)),)
     assert (by_id.blades, by_id.hulls, by_id.hertz, by_id.reference) == (GOOD.blades, GOOD.hulls, GOOD.hertz, GOOD.reference)
+
+
+def test_a_coupling_goes_with_its_winding_and_an_isolator_with_its_conductor() -> None:
+    """Opening a winding opens its couplings, opening a protective conductor its isolator; adding and replacing keep both."""
+    assert without_branches(WOUND, ["primary"]).couplings == ()
+    assert without_branches(WOUND, ["primary"]).isolators == WOUND.isolators
+    assert without_branches(WOUND, ["ground"]).isolators == ()
+    leak = Branch("leak", "b.L", "b.G", 1000, "leak", "heater")
+    for edited in (with_branches(WOUND, leak), replaced(WOUND, replace(WOUND.branch("hot"), impedance=0.05))):
+        assert (edited.couplings, edited.isolators) == (WOUND.couplings, WOUND.isolators)
 
 
 def test_opening_nothing_is_the_same_network() -> None:

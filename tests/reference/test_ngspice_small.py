@@ -7,12 +7,13 @@ from __future__ import annotations
 
 import cmath
 import math
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import pytest
 
 from strayline.netlist import netlist
-from strayline.network import Branch, Network, Sensor, checked, without_branches
+from strayline.network import Branch, Coupling, Network, Sensor, checked, without_branches
 from strayline.solve import solve
 
 if TYPE_CHECKING:
@@ -123,6 +124,45 @@ def ideal_window() -> Network:
     )
 
 
+def coupled(*pairs: tuple[str, str], reactance: float, tightness: float) -> tuple[Coupling, ...]:
+    """Windings of one reactance (ohms) on one core, each pair that is named as tightly coupled as the next."""
+    return tuple(Coupling(one, other, 1j * reactance * tightness) for one, other in pairs)
+
+
+def isolation_transformer() -> Network:
+    """Two windings on one core; a leak behind the secondary, tied to the hull, and winding capacitance back to the shore side."""
+    network = split_phase(
+        180,
+        Branch("primary", "b.L1", "b.N", 0.05 + 130j, "winding", "transformer"),
+        Branch("secondary", "t.L", "t.N", 0.05 + 130j, "winding", "transformer"),
+        Branch("tie", "t.N", "t.G", 0.002, "bond", "transformer"),
+        Branch("own hull", "t.G", "earth", 18, "water", "boat 2"),
+        Branch("kettle", "t.L", "t.N", 9.6, "load", "kettle"),
+        Branch("wet", "t.L", "t.G", 800, "leak", "kettle"),
+        Branch("between", "b.L1", "t.L", -884e3j, "filter", "transformer"),
+        sensors=(PEDESTAL, Sensor("aboard", ("kettle", "wet"), "none", frozenset())),
+    )
+    return checked(replace(network, couplings=coupled(("primary", "secondary"), reactance=130, tightness=0.9994)))
+
+
+def centre_tapped_transformer() -> Network:
+    """240 V in, two halves of a secondary out with unequal loads, and a leak on the primary side."""
+    network = split_phase(
+        180,
+        Branch("primary", "b.L1", "b.L2", 0.08 + 400j, "winding", "transformer"),
+        Branch("half 1", "t.L1", "t.N", 0.02 + 100j, "winding", "transformer"),
+        Branch("half 2", "t.N", "t.L2", 0.02 + 100j, "winding", "transformer"),
+        Branch("tie", "t.N", "b.G", 0.002, "bond", "transformer"),
+        Branch("kettle", "t.L1", "t.N", 9.6, "load", "kettle"),
+        Branch("fan", "t.L2", "t.N", 40 + 20j, "load", "fan"),
+        Branch("wet", "b.L1", "b.G", 2400, "leak", "inlet"),
+        Branch("drip", "t.L2", "b.G", 1500, "leak", "fan"),
+        sensors=(PEDESTAL, Sensor("half", ("kettle",), "none", frozenset())),
+    )
+    pairs = [("primary", "half 1", 200), ("primary", "half 2", 200), ("half 1", "half 2", 100)]
+    return checked(replace(network, couplings=tuple(Coupling(one, other, 0.9995j * ohms) for one, other, ohms in pairs)))
+
+
 @pytest.mark.parametrize(
     ("make", "least"),
     [
@@ -133,6 +173,8 @@ def ideal_window() -> Network:
         (open_ground, 0.1),
         (generator_beside, 1),
         (ideal_window, 5e-3),
+        (isolation_transformer, 1),
+        (centre_tapped_transformer, 1),
     ],
 )
 def test_residuals_agree(make: Callable[[], Network], least: float, spice_residuals: Callable[[str], dict[str, complex]]) -> None:
