@@ -1,7 +1,7 @@
 """One network with its loads switched in any combination: a few readings of each state, cheaply.
 
 The network is factored once with every load off; a load alone is then a shunt across its open switch and costs no new factors
-(solve.Sweep). Only larger sets of loads are solved afresh, each once.
+(solve.Sweep). Only larger sets of loads are solved afresh, each once. With galvanic isolators every state settles by itself.
 """
 
 from __future__ import annotations
@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 
 from strayline import solve
 from strayline.network import without_branches
+from strayline.settle import settled
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -55,7 +56,8 @@ class Loadings:
     def at(self, on: frozenset[str]) -> Readings:
         """The readings with only these loads on."""
         if on not in self._readings:
-            self._readings[on] = self._alone(on) if len(on) == 1 else self._afresh(on)
+            closed_form = len(on) == 1 and not self._network.isolators
+            self._readings[on] = self._alone(on) if closed_form else self._afresh(on)
         return self._readings[on]
 
     def window_siemens(self, sensor_id: str) -> float:
@@ -64,7 +66,7 @@ class Loadings:
 
     def _factored(self, on: frozenset[str]) -> solve.Factors:
         if on not in self._factors:
-            self._factors[on] = solve.factor(self.network(on))
+            self._factors[on] = solve.factor(settled(self.network(on)))
         return self._factors[on]
 
     def _afresh(self, on: frozenset[str]) -> Readings:

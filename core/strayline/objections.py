@@ -19,6 +19,7 @@ from strayline.equations import Probe
 from strayline.hookups import HOMEMADE
 from strayline.loadings import NOTHING
 from strayline.parts import Installation, Part, base, read
+from strayline.settle import settled
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -227,7 +228,7 @@ def _unplugged(installation: Installation, receptacle: str) -> Installation:
 def _blade_volts(way: Wired, installation: Installation) -> tuple[str, float]:
     """The boat's bare blade with the most volts to the water, at its worst for blades: its id and its volts."""
     network = faulted(worst_for_blades(installation), way.faults)
-    solution = solve.solve(network)
+    solution = solve.solve(settled(network))
     volts = {blade.id: abs(solution.voltage(blade.node) or 0) for blade in _own_blades(way, network)}
     most = max(sorted(volts), key=lambda one: volts[one])
     return most, volts[most]
