@@ -172,12 +172,12 @@ def _next_off(way: Wired, on: frozenset[str]) -> list[Row]:
         if drops[load] > 0 and abs(bare[key]) >= row["limit_volts"]:
             return [{"load": load, "rule": "low_volts", "part": f"{key[1]}.{key[2]}", "value": row["volts"], "unit": "V"}]
     for sensor in way.sensors:
-        key = ("residual", sensor.id)
-        if verdict(way, sensor, full[key]) in STRAYS and verdict(way, sensor, bare[key]) not in STRAYS:
+        window = ("residual", sensor.id)
+        if verdict(way, sensor, full[window]) in STRAYS and verdict(way, sensor, bare[window]) not in STRAYS:
             # Loads hardly touch each other's leakage, so what one adds alone is what leaving it off takes away.
-            parts = {load: way.loadings.at(frozenset({load}))[key] - bare[key] for load in sorted(on)}
-            along = {load: (part * full[key].conjugate()).real for load, part in parts.items()}
+            parts = {load: way.loadings.at(frozenset({load}))[window] - bare[window] for load in sorted(on)}
+            along = {load: (part * full[window].conjugate()).real for load, part in parts.items()}
             load = max(along, key=lambda one: along[one])
             if along[load] > 0:
-                return [{"load": load, "rule": "residual", "part": sensor.id, "value": abs(full[key]) * 1e3, "unit": "mA"}]
+                return [{"load": load, "rule": "residual", "part": sensor.id, "value": abs(full[window]) * 1e3, "unit": "mA"}]
     return []

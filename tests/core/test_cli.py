@@ -65,7 +65,9 @@ def test_help_is_help(arguments: tuple[str, ...]) -> None:
     assert (done.stdout.strip() == __version__) == ("--version" in arguments)
 
 
-@pytest.mark.parametrize("arguments", [("residuals",), ("diagnose",), ("plan",), ("ledger",), ("frobnicate",), ("ask", "--colour"), ("netlist", "a", "b")])
+@pytest.mark.parametrize(
+    "arguments", [("residuals",), ("diagnose",), ("plan",), ("ledger",), ("frobnicate",), ("ask", "--colour"), ("netlist", "a", "b")]
+)
 def test_wrong_arguments_are_told(arguments: tuple[str, ...]) -> None:
     """Missing, unknown or too many arguments end with status 2, a usage line and no trace."""
     done = core(*arguments)

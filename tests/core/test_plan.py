@@ -165,7 +165,12 @@ def two_inlets(joined: bool = False) -> Rows:
         ]
     if joined:
         load = {"id": "cooker", "kind": "load", "from": "panel", "across": "L1-L2", "watts": 2000}
-        return [*rows, {"id": "panel", "kind": "panel", "from": ["main_a", "main_b"]}, load, {"id": "hull", "kind": "hull", "from": "panel"}]
+        return [
+            *rows,
+            {"id": "panel", "kind": "panel", "from": ["main_a", "main_b"]},
+            load,
+            {"id": "hull", "kind": "hull", "from": "panel"},
+        ]
     panels = [{"id": f"panel_{tail}", "kind": "panel", "from": f"main_{tail}"} for tail in "ab"]
     loads = [
         {"id": "kettle", "kind": "load", "from": "panel_a", "watts": 600},
@@ -198,7 +203,7 @@ def test_at_most_two_adapters_and_one_cord() -> None:
 
 
 def test_a_forced_plug_is_told() -> None:
-    """What is connected now with a plug that does not belong there is listed, and must not be used; where it belongs there is no such word."""
+    """What is connected now with a plug that does not belong there is listed, and must not be used; where it belongs nothing is said."""
     rows = [*dock({"id": "outlet", "connector": FIFTY}), cord(hung="outlet"), *boat(kettle(), inlet="cord")]
     ways = planned(rows)
     assert [way["present"] for way in ways] == [True]
@@ -407,7 +412,9 @@ def test_an_isolated_combiner_may_be_used() -> None:
 def test_an_open_ground_must_not_be_used() -> None:
     """A cord whose protective conductor is open is forbidden for that; a whole one is not."""
     rows = [*dock({"id": "outlet"}), cord(), *boat(kettle())]
-    assert "no_protective_conductor" in rules(planned(rows, {"cause": "open_ground_with_leak", "at": "cord", "load": "kettle", "ohms": 1e6})[0])
+    assert "no_protective_conductor" in rules(
+        planned(rows, {"cause": "open_ground_with_leak", "at": "cord", "load": "kettle", "ohms": 1e6})[0]
+    )
     assert "no_protective_conductor" not in rules(planned(rows)[0])
 
 
