@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import cmath
+import math
 from typing import TYPE_CHECKING, Any
 
 from strayline.components import CONNECTORS
@@ -43,25 +44,30 @@ def carries_a(way: Wired, part: Part) -> float:
 # --- power ---------------------------------------------------------------------------------------------------------
 
 
-def limit_a(way: Wired, receptacle: Part) -> float:
-    """What may flow for long through an outlet: a share of the least rating among its breaker and what is plugged into it."""
-    ratings = [carries_a(way, part) for part in plugged_into(way, receptacle)]
-    return min([rated_a(receptacle), *ratings]) * CONTINUOUS_SHARE[way.system.hertz]
+def limit_a(way: Wired, part: Part) -> float:
+    """What may flow through an overcurrent device for long: a share of its rating, ashore of the least rating plugged into it too."""
+    if part.kind != "receptacle":
+        return (part.number("rated_a") or math.inf) * CONTINUOUS_SHARE[way.system.hertz]
+    ratings = [carries_a(way, one) for one in plugged_into(way, part)]
+    return min([rated_a(part), *ratings]) * CONTINUOUS_SHARE[way.system.hertz]
 
 
 def lines(way: Wired, on: frozenset[str]) -> list[Row]:
-    """Amperes through each line of each outlet in use, its limit, and what is left (watts at nominal voltage and unity power factor)."""
-    readings = way.loadings.at(on)
+    """Amperes through each line of each overcurrent device, its limit, and what is left (watts at nominal volts and unity power factor).
+
+    The devices are those of the outlets in use, and those aboard whose rating is stated.
+    """
     rows: list[Row] = []
-    for receptacle in way.receptacles:
-        limit = limit_a(way, receptacle)
-        for key, value in readings.items():
-            if key[:2] == ("line", receptacle.id):
-                left = limit - abs(value)
-                watts = left * nominal_volts(way, "L1-N")
-                rows.append({
-                    "receptacle": receptacle.id, "line": key[2], "used_a": abs(value), "limit_a": limit, "left_a": left, "left_w": watts,
-                })  # fmt: skip
+    for key, value in way.loadings.at(on).items():
+        if key[0] == "line":
+            part = way.installation.part(key[1])
+            limit = limit_a(way, part)
+            left = limit - abs(value)
+            watts = left * nominal_volts(way, "L1-N")
+            rows.append({
+                "part": part.id, "kind": part.kind, "line": key[2],
+                "used_a": abs(value), "limit_a": limit, "left_a": left, "left_w": watts,
+            })  # fmt: skip
     return rows
 
 
@@ -159,7 +165,7 @@ def _next_off(way: Wired, on: frozenset[str]) -> list[Row]:
         return []
     bare, full = way.loadings.at(NOTHING), way.loadings.at(on)
     for row in over(way, on):
-        key = ("line", row["receptacle"], row["line"])
+        key = ("line", row["part"], row["line"])
         shares = {load: abs(way.loadings.at(frozenset({load}))[key]) - abs(bare[key]) for load in sorted(on)}
         enough = [load for load in shares if shares[load] >= -row["left_a"]]
         load = min(enough, key=lambda one: shares[one]) if enough else max(shares, key=lambda one: shares[one])

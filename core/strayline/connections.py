@@ -87,7 +87,9 @@ def wired(installation: Installation, own: Kit, hookup: Hookup, faults: tuple[Fa
     probes: dict[Key, Probe] = {}
     for sensor in sensors:
         probes["residual", sensor.id] = Probe(tuple((branch_id, 1) for branch_id in sensor.branches))
-    for branch in _drawn_on(network, own, receptacles):
+    rated = {part.id for part in made.of_kind("main", "breaker") if part.id in own.aboard and part.number("rated_a")}
+    watched_aboard = [branch for branch in network.branches if branch.kind == "line" and branch.owner in rated]
+    for branch in (*_drawn_on(network, own, receptacles), *watched_aboard):
         probes["line", branch.owner, branch.id.rpartition(".")[2]] = Probe(((branch.id, 1),))
     there = {node for branch in network.branches for node in (branch.from_node, branch.to_node)}
     for part in panels:

@@ -55,7 +55,7 @@ def standing_objections(way: Wired) -> list[Objection]:
 def loaded_objections(way: Wired, on: frozenset[str]) -> list[Objection]:
     """The objections that depend on the loads which may be on: an overloaded line, a panel too low, a live hull."""
     return [
-        *(Objection("overload", f"{row['receptacle']}.{row['line']}", row["used_a"], "A") for row in over(way, on)),
+        *(Objection("overload", f"{row['part']}.{row['line']}", row["used_a"], "A") for row in over(way, on)),
         *(Objection("low_volts", f"{row['panel']}.{row['line']}", row["volts"], "V") for row in low(way, on)),
         *(Objection("live_hull", hull, volts, "V") for hull, volts in hull_volts(way, on).items() if volts > DANGEROUS_HULL_VOLTS),
     ]
@@ -91,6 +91,12 @@ def _miswired(way: Wired) -> list[Objection]:
             if lifted > 0.5 * way.phase_volts:
                 found.append(Objection("reversed", panel.id, lifted, "V"))
     return found
+
+
+def _reversible(way: Wired) -> list[Objection]:
+    """An outlet that takes its plug either way round, so that line and neutral may arrive exchanged: a caution."""
+    connectors = [(part.id, part.text("connector")) for part in way.receptacles]
+    return [Objection("reversible_plug", one, name, forbids=False) for one, name in connectors if CONNECTORS[name].reversible]
 
 
 def _unwatched(way: Wired) -> list[Objection]:
@@ -248,6 +254,7 @@ def _detectors(way: Wired) -> list[Objection]:
 RULES: tuple[Callable[[Wired], list[Objection]], ...] = (
     _forced,
     _miswired,
+    _reversible,
     _unwatched,
     _joined_neutrals,
     _shared_neutral,

@@ -17,7 +17,8 @@ WAY, best first:
     use           "may be used" | "do not use"
     reasons       [{"rule", "part", "value", "unit"}], empty where it may be used
     cautions      [{"rule", "part", "value", "unit"}]
-    lines         [{"receptacle", "line", "used_a", "limit_a", "left_a", "left_w"}] with every load on; what is left may be below zero
+    lines         [{"part", "kind", "line", "used_a", "limit_a", "left_a", "left_w"}] of each outlet in use, and of each main and breaker
+                  aboard whose rating is stated, with every load on; what is left may be below zero
     panels        [{"panel", "line", "volts", "limit_volts"}] with every load on; volts null where nothing feeds it
     hull_volts    the most any of the boat's hulls stands above the water, or null
     loads_off     [{"load", "rule": "dead" | "overload" | "low_volts" | "residual", "part", "value", "unit"}]: what must stay off
@@ -117,7 +118,7 @@ def _rank(way: Mapping[str, Any]) -> tuple[Any, ...]:
         (eased["use"] != MAY or eased["holds"] != "holds"),
         way["use"] != MAY,
         SEVERITY.index(way["holds"]) if way["holds"] in SEVERITY else 1,
-        -math.fsum(max(line["left_w"], 0.0) for line in way["lines"]),
+        -math.fsum(max(line["left_w"], 0.0) for line in way["lines"] if line["kind"] == "receptacle"),
         len(way["connections"]),
         [(link["part"], link["from"]) for link in way["connections"]],
     )

@@ -25,6 +25,7 @@ RULES = {
     "miswired": "wired wrongly",
     "reversed_outlet": "line and neutral are exchanged in the outlet",
     "reversed": "line and neutral arrive exchanged",
+    "reversible_plug": "its plug goes in either way round, so line and neutral may be exchanged",
     "no_device": "the outlet has no ground-fault device",
     "dead_device": "the outlet's ground-fault device never opens",
     "joined_neutrals": "two neutrals meet, so each outlet loses sight of its own return",
@@ -140,7 +141,7 @@ def _way_lines(number: int, way: Mapping[str, Any]) -> list[str]:
     lines += [f"   ! {_told(one)}" for one in way["reasons"]]
     lines += [f"   - {_told(one)}" for one in way["cautions"]]
     lines += [
-        f"   Left on {row['receptacle']} {row['line']}: {row['left_a']:.1f} A of {row['limit_a']:.1f} A, about {row['left_w']:.0f} W"
+        f"   Left on {row['part']} {row['line']}: {row['left_a']:.1f} A of {row['limit_a']:.1f} A, about {row['left_w']:.0f} W"
         for row in way["lines"]
     ]
     lines += [f"   Leave off {one['load']}: {_told(one)}" for one in way["loads_off"]]

@@ -350,6 +350,15 @@ def test_exchanged_line_and_neutral_are_found_by_the_solve() -> None:
     assert not {"reversed_outlet", "reversed"} & rules(planned([*dock({"id": "outlet"}), *rows])[0])
 
 
+def test_a_plug_that_goes_in_either_way_is_a_caution() -> None:
+    """An outlet whose plug may be turned round is a caution, one whose plug may not is none."""
+    shore = dock({"id": "outlet", "connector": "household_230v", "device": "rcd_30"}, system="single_230")
+    rows = [adapter("step", "straight_household_16"), cord(plug="16a_230v"), *boat(kettle(), plug="16a_230v")]
+    assert "reversible_plug" in rules(planned([*shore, *rows])[0], "cautions")
+    blue = dock({"id": "outlet", "connector": "16a_230v", "device": "rcd_30"}, system="single_230")
+    assert "reversible_plug" not in rules(planned([*blue, *rows])[0], "cautions")
+
+
 def test_no_reversal_is_claimed_where_both_poles_stand_away_from_ground() -> None:
     """On a supply without a neutral both poles stand near 133 V to ground (common practice), which is no reversed polarity."""
     outlet = {"id": "outlet", "connector": "16a_230v", "device": "rcd_30"}
@@ -456,6 +465,14 @@ def test_an_overload_names_what_must_stay_off() -> None:
     assert (eased["holds"], eased["use"]) == ("holds", MAY)
     assert all(line["left_a"] >= 0 for line in eased["lines"])
     assert rules(planned([*dock({"id": "outlet"}), cord(), *boat(*loads[:2])])[0]) == set()
+
+
+def test_a_breaker_aboard_may_be_overloaded_too() -> None:
+    """A main aboard whose rating is stated has a line of its own, and an overload where the outlet still has room."""
+    way = planned([*dock({"id": "outlet"}), cord(), *boat(kettle(2400), rated_a=15)])[0]
+    assert [(one["rule"], one["part"]) for one in way["reasons"]] == [("overload", "main.L1")]
+    assert {(line["part"], line["kind"]) for line in way["lines"]} == {("outlet", "receptacle"), ("main", "main")}
+    assert planned([*dock({"id": "outlet"}), cord(), *boat(kettle(1200), rated_a=15)])[0]["reasons"] == []
 
 
 def test_loads_across_two_lines_get_nothing_from_one() -> None:
