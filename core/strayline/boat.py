@@ -8,6 +8,8 @@ from strayline.installation import zone_parts
 from strayline.parts import base
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
+
     from strayline.parts import Installation, Part
 
 
@@ -28,11 +30,18 @@ def own_parts(installation: Installation, panel_id: str | None = None) -> tuple[
 
 
 def panel_of(installation: Installation, load: Part) -> Part:
-    """The panel a load hangs on, through its breaker or directly."""
-    parent = installation.part(base(load.parents[0]))
-    return parent if parent.kind == "panel" else installation.part(base(parent.parents[0]))
+    """The panel a load hangs on, through whatever stands between (an inverter counts as one where there is no other)."""
+    return next(part for kinds in (("panel",), ("inverter",)) for part in _above(installation, load) if part.kind in kinds)
 
 
 def main_of(installation: Installation, load: Part) -> Part:
-    """The boat main a load hangs behind (its panel's first)."""
-    return installation.part(base(panel_of(installation, load).parents[0]))
+    """What a load's panel hangs behind: the boat's main, else the last part before the panel."""
+    before = list(_above(installation, panel_of(installation, load)))
+    return next((part for part in before if part.kind == "main"), before[0])
+
+
+def _above(installation: Installation, part: Part) -> Iterator[Part]:
+    """The parts that feed this one, nearest first, by the first supply end of each."""
+    while part.parents and part.parents[0]:
+        part = installation.part(base(part.parents[0]))
+        yield part

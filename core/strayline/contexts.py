@@ -7,9 +7,12 @@ test leaves behind, every unmated male blade; the caller vetoes what would be li
 
 from __future__ import annotations
 
+import dataclasses
+
+from strayline.aboard import opened_by_breaker, opened_by_main
 from strayline.boat import own_parts
-from strayline.components import SYSTEMS
-from strayline.installation import build, opened_by_breaker, opened_by_main
+from strayline.components import LINES, SYSTEMS
+from strayline.installation import build
 from strayline.network import Branch, Network, with_branches, without_branches
 from strayline.parts import Installation, Part, base, read
 
@@ -120,8 +123,8 @@ def _breakers_open(network: Network, installation: Installation, mine: tuple[Par
     for part in mine:
         if part.kind == "breaker" and not running_below(installation, part, running or set()):
             opened |= opened_by_breaker(part, installation)
-        if part.kind == "load" and part.id not in (running or set()) and installation.part(base(part.parents[0])).kind == "panel":
-            opened.add(f"{part.id}.switch")
+        if part.kind == "load" and part.id not in (running or set()) and installation.part(base(part.parents[0])).kind != "breaker":
+            opened |= {f"{part.id}.switch", f"{part.id}.switch2"}
     return _opened(network, opened)
 
 
@@ -131,7 +134,7 @@ def _opened(network: Network, branch_ids: set[str]) -> Network:
 
 def running_below(installation: Installation, breaker: Part, running: set[str]) -> bool:
     """Whether a breaker feeds one of the running loads."""
-    return any(child.id in running for child in installation.children(breaker.id))
+    return bool(running & installation.downstream(breaker.id))
 
 
 def _with_test_load(network: Network, installation: Installation, mine: tuple[Part, ...]) -> Network:
@@ -148,16 +151,21 @@ def _dead(name: str, network: Network, installation: Installation, mine: tuple[P
     cords = {part.id for part in mine if part.kind in ("cord", "adapter")}
     boat = {part.id for part in mine if part.kind not in ("cord", "adapter", "receptacle")}
     kept = cords if name == "cord_in_hand" else boat
-    left = tuple(branch for branch in network.branches if branch.owner in kept and branch.kind != "filter")
+    left = tuple(_to_a_meter(branch) for branch in network.branches if branch.owner in kept and branch.kind not in ("filter", "source"))
     alone = Network(network.hertz, network.reference, left)
     if name == "cord_in_hand":
         return alone
     panel = next(part for part in mine if part.kind == "panel")
     if name == "cord_out":
         return with_branches(_breakers_open(alone, installation, mine), meter_branch(panel.id))
-    lines = [line for line in ("L1", "L2") if any(branch.to_node == f"{panel.id}.{line}" for branch in left)]
+    lines = [line for line in LINES if any(branch.to_node == f"{panel.id}.{line}" for branch in left)]
     leads = [Branch(f"lead.{line}", f"{panel.id}.{line}", f"{panel.id}.N", complex(LEAD_OHMS), "line", METER) for line in lines]
     return with_branches(alone, *leads, meter_branch(panel.id))
+
+
+def _to_a_meter(branch: Branch) -> Branch:
+    """A branch as a resistance meter's direct current sees it: a winding is its copper."""
+    return dataclasses.replace(branch, impedance=complex(branch.impedance.real)) if branch.kind == "winding" else branch
 
 
 def meter_branch(panel: str) -> Branch:
@@ -174,7 +182,7 @@ def worst_for_blades(installation: Installation) -> Installation:
     rows = raw_rows(installation)
     for row in rows.values():
         if row["kind"] == "load":
-            row["on"] = row["across"] == "L1-L2"
+            row["on"] = "N" not in str(row["across"])
         if row["kind"] in ("breaker", "main"):
             row["closed"] = True
     return read({"parts": list(rows.values())})

@@ -5,11 +5,13 @@ from __future__ import annotations
 import dataclasses
 from typing import TYPE_CHECKING
 
+from strayline.aboard import tap_node
 from strayline.components import SYSTEMS
 from strayline.errors import CaseError
 from strayline.faults import Change, Effect, Fault, Shunt, boat_of, chain_of, own_panel, stated_ohms, stated_part, stated_reactance
-from strayline.installation import EARTH, tap_node
 from strayline.network import Branch, Network, with_branches
+from strayline.parts import splits
+from strayline.wiring import EARTH
 
 if TYPE_CHECKING:
     from strayline.parts import Installation, Part
@@ -83,7 +85,7 @@ def line_to_ground(*kinds: str) -> Change:
 
     def wet(installation: Installation, network: Network, fault: Fault) -> Effect:
         part = stated_part(installation, fault.at, *kinds)
-        end = f"{part.id}.a" if part.values.get("style") == "splitting_y" else part.id
+        end = f"{part.id}.a" if splits(part) else part.id
         return Effect(network, (Shunt("leak", f"{end}.L1", f"{end}.G", stated_ohms(fault), "leak", part.id),))
 
     return wet

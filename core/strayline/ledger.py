@@ -38,10 +38,10 @@ from typing import TYPE_CHECKING, Any
 from strayline import devices, solve
 from strayline.appliances import APPLIANCES, CORD, CORD_METRES, ELEMENT, UNSAID, Appliance, healthy_ma, suspect_ma
 from strayline.boat import own_parts
-from strayline.installation import EARTH
 from strayline.parts import base
 from strayline.phasor import shown_angle
 from strayline.residuals import stated_network
+from strayline.wiring import EARTH
 
 if TYPE_CHECKING:
     from collections.abc import Iterable

@@ -12,6 +12,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from strayline.components import (
+    ADAPTERS,
     CHOICE,
     CONNECTORS,
     FLAG,
@@ -27,6 +28,7 @@ from strayline.components import (
 from strayline.devices import DEVICES, operating_band_ma
 from strayline.errors import CaseError
 
+MOST_PARTS = 8000  # a dock of 250 boats with thirty parts each
 _ID = re.compile(r"[a-z][a-z0-9_]{0,31}")
 
 
@@ -87,6 +89,11 @@ class Installation:
         return frozenset(found)
 
 
+def splits(part: Part) -> bool:
+    """Whether a part is an adapter with two outlets, its tails `.a` and `.b`."""
+    return part.kind == "adapter" and ADAPTERS[part.text("style")].wiring == "split"
+
+
 def base(reference: str) -> str:
     """The part id in a reference: `y1` in both `y1` and `y1.a`."""
     return reference.partition(".")[0]
@@ -108,8 +115,8 @@ def read(raw: object, where: str = "installation") -> Installation:
     rows = raw.get("parts")
     if not isinstance(rows, (list, tuple)) or not rows:
         raise CaseError(f"{where}.parts", "must be a list of at least one part", rows)
-    if len(rows) > 4000:
-        raise CaseError(f"{where}.parts", "at most 4000 parts", len(rows))
+    if len(rows) > MOST_PARTS:
+        raise CaseError(f"{where}.parts", f"at most {MOST_PARTS} parts", len(rows))
     parts: dict[str, Part] = {}
     assumed: list[tuple[str, object, str]] = []
     paths: dict[str, str] = {}
@@ -164,7 +171,7 @@ def _read_part(row: object, path: str) -> tuple[Part, list[tuple[str, object, st
             if raw == "unknown" or (isinstance(raw, (list, tuple)) and parameter.type == NUMBER):
                 assumed.append((f"{part_id}.{parameter.name}", values[parameter.name], parameter.unit))
     listed = values.get("from", "")
-    parents = tuple(listed) if isinstance(listed, tuple) else (str(listed),) if kind != "supply" else ()
+    parents = tuple(listed) if isinstance(listed, tuple) else (str(listed),) if "from" in known else ()
     return Part(part_id, kind, values, parents), assumed
 
 
@@ -230,7 +237,7 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
             raise CaseError(f"{path}.from", "no part has this id", parent)
         if owner.kind not in allowed:
             raise CaseError(f"{path}.from", f"a {part.kind} hangs on a {' or '.join(allowed)}, not on a {owner.kind}", parent)
-        splitting = owner.kind == "adapter" and owner.values["style"] == "splitting_y"
+        splitting = splits(owner)
         if splitting != ("." in parent) or (splitting and parent.partition(".")[2] not in ("a", "b")):
             rule = "a splitting Y is named with its tail, .a or .b" if splitting else "only a splitting Y has tails"
             raise CaseError(f"{path}.from", rule, parent)
@@ -238,7 +245,8 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
     if len(set(hung_on)) != len(hung_on):
         raise CaseError(f"{path}.from", "the same part twice", ", ".join(part.parents))
     if part.kind == "adapter":
-        wanted = {"combining_y": (2,), "homemade": (1, 2)}.get(part.text("style"), (1,))
+        plugs = len(ADAPTERS[part.text("style")].plugs)
+        wanted = (plugs,) if plugs else (1, 2)
         if len(part.parents) not in wanted:
             raise CaseError(
                 f"{path}.from", f"a {part.values['style']} adapter has {' or '.join(map(str, wanted))} supply end", ", ".join(part.parents)
@@ -249,6 +257,8 @@ def _check_parents(part: Part, parts: Mapping[str, Part], path: str) -> None:
             raise CaseError(path, "a load needs exactly one of ohms, watts and amperes", ", ".join(given) or "none")
     if part.kind in ("panel", "hull") and len(part.parents) > 2:
         raise CaseError(f"{path}.from", "at most two", len(part.parents))
+    if part.kind == "transfer" and len(part.parents) != 2:
+        raise CaseError(f"{path}.from", "a transfer switch has two sources", len(part.parents))
 
 
 def _check_band(part: Part, path: str) -> None:

@@ -16,11 +16,12 @@ from strayline import contexts, solve
 from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE, CAUSES
 from strayline.causes import Effect, Fault, Shunt, effect
-from strayline.components import CONNECTORS, SYSTEMS
-from strayline.installation import EARTH, build
+from strayline.components import CONNECTORS, LINES, SYSTEMS
+from strayline.installation import build
 from strayline.network import Network, nodes
 from strayline.parts import Installation, Part, base
 from strayline.severities import severities
+from strayline.wiring import EARTH
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -191,7 +192,7 @@ class _Prepared:
         self.context = context
         present = {branch.id for branch in network.branches}
         self.lines = [
-            tuple(f"{watch.id}.{line}" for line in ("L1", "L2") if watch.rated_a and f"{watch.id}.{line}" in present) for watch in watched
+            tuple(f"{watch.id}.{line}" for line in LINES if watch.rated_a and f"{watch.id}.{line}" in present) for watch in watched
         ]
         self.names: list[str] = []
         self.probes = [solve.probe_residual(self.factors, watch.id) for watch in watched]
@@ -211,7 +212,7 @@ class _Prepared:
         mine = own_parts(installation)
         cord = next((part.id for part in mine if part.kind == "cord"), None)
         if self.context in (contexts.AS_FOUND, "one_load") and cord:
-            live = [(f"{cord}.{name}", 1) for name in ("L1", "L2", "N") if f"{cord}.{name}" in present]
+            live = [(f"{cord}.{name}", 1) for name in (*LINES, "N") if f"{cord}.{name}" in present]
             ground = [(f"{cord}.G", 1)] if f"{cord}.G" in present else []
             found += [
                 ("cord_sum_a", solve.probe_current(self.factors, live + ground)),

@@ -14,6 +14,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from strayline import arrangements, contexts, likelihood
+from strayline.aboard import water_ohms
 from strayline.allowed import DANGEROUS_HULL_VOLTS, Situation, refusal, unwatched
 from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE
@@ -21,13 +22,13 @@ from strayline.catalogue.questions import CLEAR, GATE, QUESTION, QUESTIONS, UNKN
 from strayline.catalogue.tests import ROLES, TEST, TESTS
 from strayline.causes import Shunt
 from strayline.errors import CaseError, RequestError
-from strayline.installation import EARTH
 from strayline.likelihood import LIMITS, Evidence
 from strayline.next_test import NAMED, NOTHING_NOW, Candidate, choose, leading_group, stop, verification
 from strayline.parts import Installation, read
 from strayline.posterior import Hypotheses, cause_marginal, misfit, posterior
 from strayline.predict import HULL, Latent, predictions
 from strayline.units import QuantityError, parse_quantity
+from strayline.wiring import EARTH
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
@@ -223,7 +224,7 @@ def _evidence(facts: tuple[tuple[str, str], ...], installation_json: str) -> Evi
 def latents(installation: Installation) -> list[list[Latent]]:
     """The unknown facts of a typical set-up, as shunts: afloat or ashore, a neighbour's load running, an inverter aboard."""
     hull = installation.part("hull")
-    water = Shunt("water", "hull.metal", EARTH, complex(hull.number("water_ohms") or 1.0), "water", "hull")
+    water = Shunt("water", "hull.metal", EARTH, complex(water_ohms(hull)), "water", "hull")
     next_door = Shunt("next_door", "panel9.L1", "stove9.in", 0.002 + 0j, "line", "stove9")
     return [
         [Latent("afloat", "afloat", 0.93, (water,)), Latent("afloat", "ashore", 0.07)],

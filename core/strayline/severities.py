@@ -14,7 +14,7 @@ from strayline.boat import main_of, own_parts
 from strayline.causes import Fault
 from strayline.components import CONNECTORS, SYSTEMS
 from strayline.leaks import TESTER_VOLTS, first_line
-from strayline.parts import base
+from strayline.parts import base, splits
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -78,9 +78,7 @@ class _Boat:
     @property
     def exchangeable(self) -> list[Part]:
         """Where two conductors may have changed places: an adapter, a cord, an inlet with one supply end."""
-        return [
-            part for part in self.of("adapter", "cord", "inlet") if len(part.parents) == 1 and part.values.get("style") != "splitting_y"
-        ]
+        return [part for part in self.of("adapter", "cord", "inlet") if len(part.parents) == 1 and not splits(part)]
 
     @property
     def leaks(self) -> list[float]:
@@ -247,6 +245,8 @@ def _bonded_at(kind: str) -> Callable[[_Boat, str], list[Fault]]:
 
 
 def _dock_bond(boat: _Boat, cause: str) -> list[Fault]:
+    if not boat.system.neutral:
+        return []
     return [Fault(cause, at=base(part.parents[0]), ohms=ohms) for part in boat.plugged[:1] for ohms in (0.01, 0.1, 1.0)]
 
 
