@@ -5,9 +5,11 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from strayline.boat import panel_of
+from strayline.components import LINES
 from strayline.errors import CaseError
 from strayline.faults import Change, Effect, Fault, Shunt, chain_of, own_panel, stated_ohms, stated_part
-from strayline.network import without_branches
+from strayline.network import nodes, without_branches
+from strayline.wiring import branch_kind
 
 if TYPE_CHECKING:
     from strayline.network import Network
@@ -21,6 +23,8 @@ def bond_at(*kinds: str) -> Change:
 
     def bond(installation: Installation, network: Network, fault: Fault) -> Effect:
         part = stated_part(installation, fault.at, *kinds)
+        if f"{part.id}.N" not in nodes(network):
+            raise CaseError("at", "must be where there is a neutral", part.id)
         return Effect(network, (Shunt("bond", f"{part.id}.N", f"{part.id}.G", stated_ohms(fault), "bond", part.id),))
 
     return bond
@@ -56,10 +60,11 @@ def transformer_bypassed(installation: Installation, network: Network, fault: Fa
     if part.kind == "panel":
         return bond_at("panel")(installation, network, fault)
     out = without_branches(network, lambda branch: branch.owner == part.id and branch.kind == "winding")
-    straps = (("L1", "line"), ("N", "neutral"), ("G", "protective"))
-    ohms = stated_ohms(fault)
+    ends = {f"{part.parents[0]}.{conductor}": f"{part.id}.{conductor}" for conductor in (*LINES, "N", "G")}
+    there, ohms = set(nodes(network)), stated_ohms(fault)
+    straps = [(start, end) for start, end in ends.items() if {start, end} <= there]
     return Effect(
-        out, tuple(Shunt(f"strap.{end}", f"{part.parents[0]}.{end}", f"{part.id}.{end}", ohms, kind, part.id) for end, kind in straps)
+        out, tuple(Shunt(f"strap.{end}", start, end, ohms, branch_kind(end.rpartition(".")[2]), part.id) for start, end in straps)
     )
 
 

@@ -112,7 +112,10 @@ def opened(conductor: str, *kinds: str) -> Change:
 
     def broken(installation: Installation, network: Network, fault: Fault) -> Effect:
         part = stated_part(installation, fault.at, *kinds)
-        return Effect(without_branches(network, lambda branch: branch.owner == part.id and branch.kind == conductor))
+        gone = [branch.id for branch in network.branches if branch.owner == part.id and branch.kind == conductor]
+        if not gone:
+            raise CaseError("at", f"must have a {conductor} conductor to break", part.id)
+        return Effect(without_branches(network, gone))
 
     return broken
 
@@ -147,8 +150,9 @@ def joined_inlets(installation: Installation, network: Network, fault: Fault) ->
 
 
 def _landed(network: Network, load: Part, node: str) -> Network:
-    """The network in which a load's far end is at `node`."""
-    last = chain_of(network, load)[-1]
+    """The network in which a load's far end, behind the second pole of its switch where it has one, is at `node`."""
+    second_pole = [branch for branch in network.branches if branch.id == f"{load.id}.switch2"]
+    last = (second_pole or chain_of(network, load))[-1]
     return _with(network, {last.id: dataclasses.replace(last, to_node=node)})
 
 

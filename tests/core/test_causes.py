@@ -19,6 +19,7 @@ from strayline.installation import build
 from strayline.network import Network, nodes, with_branches
 from strayline.parts import Installation, read
 from strayline.predict import HULL, Outlook, Point, Predictions, Watch, predictions
+from strayline.settle import settled
 from strayline.severities import severities
 from strayline.solve import Solution, factor, probe_residual, solve
 
@@ -233,7 +234,7 @@ def test_seen_where_the_trade_sees_it(cause: str) -> None:
 
 
 def test_every_cause_is_looked_for() -> None:
-    """The table of who sees what leaves out no cause but those that need a part which the typical boat lacks."""
+    """The table of who sees what leaves out no cause but the one that needs a transformer; that is looked for at the drawn part."""
     assert set(CAUSE) - set(SEEN_BY) == {"transformer_primary_leak"}
 
 
@@ -246,6 +247,97 @@ def test_what_two_legs_cancel_shows_when_one_goes_off() -> None:
         alone = contexts.switched(f"one_load:{load}", installation, network)
         assert abs(solve(alone).residual("outlet")) > 0.030
     assert abs(strayed(installation, fault)["outlet"]) < CLASS_A_A
+
+
+def test_a_neutral_shared_behind_one_device_trips_that_device_alone() -> None:
+    """The device of a circuit sees the other circuit's whole return; boat, outlet and feeder see nothing of it."""
+    installation = read({"parts": [
+        {"id": "dock", "kind": "supply", "system": "split_120_240"},
+        {"id": "feeder", "kind": "feeder", "from": "dock"},
+        {"id": "post", "kind": "pedestal", "from": "feeder"},
+        {"id": "outlet", "kind": "receptacle", "from": "post", "connector": "30a_125v"},
+        {"id": "cord", "kind": "cord", "from": "outlet"},
+        {"id": "inlet", "kind": "inlet", "from": "cord"},
+        {"id": "main", "kind": "main", "from": "inlet"},
+        {"id": "panel", "kind": "panel", "from": "main"},
+        {"id": "galley", "kind": "breaker", "from": "panel", "poles": 2, "device": "class_a"},
+        {"id": "kettle", "kind": "load", "from": "galley", "ohms": 24.0},
+        {"id": "lamp", "kind": "load", "from": "panel", "ohms": 120.0},
+        {"id": "hull", "kind": "hull", "from": "panel"},
+    ]})  # fmt: skip
+    (severity,) = severities("shared_neutral_branch", installation)
+    assert (severity.fault.at, severity.fault.load) == ("galley", "lamp")
+    found = strayed(installation, severity.fault)
+    assert abs(found["galley"]) == pytest.approx(120 / 120, rel=0.02)  # Ohm: 120 V across the lamp
+    assert max(abs(found[sensor]) for sensor in ROLES.values()) < 1e-9
+
+
+def fitted(*aboard: dict[str, object]) -> Installation:
+    """One cord of a 230 V dock, what is fitted behind its inlet, and a hull on the panel."""
+    return read({"parts": [
+        {"id": "dock", "kind": "supply", "system": "single_230"},
+        {"id": "feeder", "kind": "feeder", "from": "dock", "device": "rcd_100_s"},
+        {"id": "post", "kind": "pedestal", "from": "feeder"},
+        {"id": "outlet", "kind": "receptacle", "from": "post", "connector": "16a_230v", "device": "rcd_30"},
+        {"id": "cord", "kind": "cord", "from": "outlet"},
+        {"id": "inlet", "kind": "inlet", "from": "cord"},
+        *aboard,
+        {"id": "hull", "kind": "hull", "from": "panel"},
+    ]})  # fmt: skip
+
+
+HEATED = {"id": "heater", "kind": "load", "from": "panel", "watts": 1500}
+FITTED = {
+    "transformer": (
+        {"id": "winding", "kind": "transformer", "from": "inlet", "rated_a": 16},
+        {"id": "main", "kind": "main", "from": "winding", "device": "rcd_30"},
+        {"id": "panel", "kind": "panel", "from": "main"},
+        HEATED,
+    ),
+    "generator": (
+        {"id": "main", "kind": "main", "from": "inlet", "device": "rcd_30"},
+        {"id": "genset", "kind": "generator"},
+        {"id": "source_switch", "kind": "transfer", "from": ["main", "genset"]},
+        {"id": "panel", "kind": "panel", "from": "source_switch"},
+        HEATED,
+    ),
+    "inverter": (
+        {"id": "main", "kind": "main", "from": "inlet", "device": "rcd_30"},
+        {"id": "panel", "kind": "panel", "from": "main"},
+        {"id": "unit", "kind": "inverter", "from": "panel"},
+        {**HEATED, "from": "unit"},
+    ),
+    "isolator": (
+        {"id": "block", "kind": "isolator", "from": "inlet"},
+        {"id": "main", "kind": "main", "from": "block", "device": "rcd_30"},
+        {"id": "panel", "kind": "panel", "from": "main"},
+        HEATED,
+    ),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize(
+    ("part", "cause", "roles"),
+    [
+        ("transformer", "transformer_primary_leak", "PF"),  # the boat's own device stands on the secondary
+        ("transformer", "transformer_bypassed", "PF"),  # and behind its bond
+        ("generator", "generator_bond", "PFA"),
+        ("inverter", "inverter_bond", "PFA"),
+        ("inverter", "inverter_common_neutral", "PFA"),
+        ("isolator", "isolator_self_test", "PFA"),
+    ],
+)
+def test_at_the_drawn_part(part: str, cause: str, roles: str) -> None:
+    """Where the part itself is drawn its cause sits there, and the sensors that the trade table (common practice) names see it."""
+    installation = fitted(*FITTED[part])
+    grid = [severity.fault for severity in severities(cause, installation)]
+    assert {installation.part(fault.at).kind for fault in grid} == {part}
+    healthy = build(installation)
+    for role, sensor in ROLES.items():
+        quiet = abs(solve(settled(healthy)).residual(sensor))
+        strongest = max(abs(solve(settled(applied(installation, healthy, [fault]))).residual(sensor)) for fault in grid)
+        assert quiet < CLASS_A_A
+        assert (strongest > CLASS_A_A) == (role in roles), f"{role}: {strongest * 1e3:.1f} mA"
 
 
 # --- what else it does ---------------------------------------------------------------------------------------------
@@ -426,3 +518,27 @@ def test_a_fault_that_cannot_be_is_refused(fault: Fault, words: str) -> None:
     installation = typical("split_120_240", "one_cord_four_wire")
     with pytest.raises(CaseError, match=re.escape(words)):
         effect(installation, build(installation), fault)
+
+
+def test_no_neutral_no_fault_of_it() -> None:
+    """On a dock without a neutral conductor no post can have it bonded or broken: such a fault is refused, and stands in no grid."""
+    installation = read({"parts": [
+        {"id": "dock", "kind": "supply", "system": "no_neutral_230"},
+        {"id": "post", "kind": "pedestal", "from": "dock"},
+        {"id": "outlet", "kind": "receptacle", "from": "post", "connector": "16a_230v", "device": "rcd_30"},
+        {"id": "cord", "kind": "cord", "from": "outlet"},
+        {"id": "inlet", "kind": "inlet", "from": "cord"},
+        {"id": "panel", "kind": "panel", "from": "inlet"},
+        {"id": "lamp", "kind": "load", "from": "panel", "watts": 60},
+        {"id": "hull", "kind": "hull", "from": "panel"},
+    ]})  # fmt: skip
+    network = build(installation)
+    with pytest.raises(CaseError, match="at: must be where there is a neutral"):
+        effect(installation, network, Fault("dock_bond", at="post", ohms=0.1))
+    with pytest.raises(CaseError, match="at: must have a neutral conductor to break"):
+        effect(installation, network, Fault("open_neutral", at="post"))
+    assert not severities("dock_bond", installation)
+    for cause in CAUSE:
+        for severity in severities(cause, installation):
+            made = effect(installation, network, severity.fault)
+            assert all({shunt.a, shunt.b} <= set(nodes(made.network)) for shunt in made.shunts), severity.fault
