@@ -6,11 +6,11 @@ import cmath
 import math
 from typing import TYPE_CHECKING, Any
 
+from strayline.aboard import nominal_volts
 from strayline.components import CONNECTORS
 from strayline.connections import STRAYS, fed, verdict
 from strayline.loadings import NOTHING
 from strayline.parts import base
-from strayline.phasor import polar
 
 if TYPE_CHECKING:
     from strayline.connections import Wired
@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 CONTINUOUS_SHARE = {60.0: 0.8, 50.0: 1.0}  # of a breaker's rating, by hertz: NEC 210.20 (from memory); IEC 60898-1 carries its rating
 LOW_SHARE = 0.9  # 108 of 120 V: common practice; -10 % of 230 V: IEC 60038 (from memory)
 DEAD_SHARE = 0.1  # of the rated voltage: nothing runs; a judgement
-WEAK_SHARE = 0.95  # of the rated power: below this it is told; a judgement
+WEAK_SHARE = 0.9  # of the rated power: below this it is told; a judgement
 RATED_ACROSS_LINES = {120.0: 240.0}  # appliances for two lines of a 120 V system are made for 240 V; on two legs of 208Y they get less
 
 Row = dict[str, Any]
@@ -63,7 +63,7 @@ def lines(way: Wired, on: frozenset[str]) -> list[Row]:
             part = way.installation.part(key[1])
             limit = limit_a(way, part)
             left = limit - abs(value)
-            watts = left * nominal_volts(way, "L1-N")
+            watts = left * _nominal(way, "L1-N")
             rows.append({
                 "part": part.id, "kind": part.kind, "line": key[2],
                 "used_a": abs(value), "limit_a": limit, "left_a": left, "left_w": watts,
@@ -76,13 +76,8 @@ def over(way: Wired, on: frozenset[str]) -> list[Row]:
     return [row for row in lines(way, on) if row["left_a"] < 0]
 
 
-def nominal_volts(way: Wired, pair: str) -> float:
-    """Nominal volts between two conductors as the boat names them; without a neutral its N is the next line."""
-    system = way.system
-    names = list(system.lines)
-    ends = [names[1] if name == "N" and not system.neutral else name for name in pair.split("-")]
-    at = [0j if name == "N" else polar(way.phase_volts, system.lines[name]) for name in ends]
-    return abs(at[0] - at[1])
+def _nominal(way: Wired, across: str) -> float:
+    return nominal_volts(across, way.system, way.phase_volts)
 
 
 def panel_rows(way: Wired, on: frozenset[str]) -> list[Row]:
@@ -90,7 +85,7 @@ def panel_rows(way: Wired, on: frozenset[str]) -> list[Row]:
     rows: list[Row] = []
     for key, value in way.loadings.at(on).items():
         if key[0] == "panel":
-            limit = LOW_SHARE * nominal_volts(way, "L1-N")
+            limit = LOW_SHARE * _nominal(way, "L1-N")
             volts = abs(value) if fed(way, key[1]) and not cmath.isnan(value) else None
             rows.append({"panel": key[1], "line": key[2], "volts": volts, "limit_volts": limit})
     return rows
@@ -104,7 +99,7 @@ def low(way: Wired, on: frozenset[str]) -> list[Row]:
 def _rated_volts(way: Wired, load: Part) -> float:
     """What an appliance across these conductors is made for."""
     across = load.text("across")
-    return RATED_ACROSS_LINES.get(way.system.volts if not across.endswith("N") else 0.0) or nominal_volts(way, across)
+    return RATED_ACROSS_LINES.get(way.system.volts if not across.endswith("N") else 0.0) or _nominal(way, across)
 
 
 def _load_volts(way: Wired, load: Part) -> float:

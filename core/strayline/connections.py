@@ -118,7 +118,7 @@ def _drawn_on(network: Network, own: Kit, receptacles: tuple[Part, ...]) -> list
     inside = [branch for branch in network.branches if branch.kind == "line" and base(branch.owner) not in outlets]
     groups = groups_of((branch.from_node, branch.to_node) for branch in inside)
     aboard = {
-        groups.get(node, "")
+        groups.get(node, node)
         for branch in network.branches
         if base(branch.owner) in own.aboard or branch.kind == "winding"
         for node in (branch.from_node, branch.to_node)

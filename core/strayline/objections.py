@@ -137,7 +137,7 @@ def _shared_neutral(way: Wired) -> list[Objection]:
     """A Y whose two lines are (nearly) in phase: its common neutral may carry the sum of both, and no breaker watches that conductor."""
     found: list[Objection] = []
     for part in way.used("adapter"):
-        if ADAPTERS[part.text("style")].wiring != "join":
+        if ADAPTERS[part.text("style")].wiring not in ("join", "isolated"):
             continue
         volts = way.loadings.solution(NOTHING)
         total = 0j
@@ -170,6 +170,23 @@ def _without_ground(way: Wired) -> list[Objection]:
         apart = any(part.kind == "transformer" for part in above(way.installation, panel))
         if fed(way, panel.id) and groups.get(f"{panel.id}.G") != shore and not apart:
             found.append(Objection("no_protective_conductor", panel.id))
+    return found
+
+
+def _bond_aboard(way: Wired) -> list[Objection]:
+    """A tie from the outlet's own neutral to ground anywhere behind the outlet: neutral current takes the ground too.
+
+    On shore power a boat's neutral meets ground ashore only (ISO 13297 6.8; ABYC E-11; NEC 250.142(B), from memory). Behind a
+    transformer the neutral is another one, and its tie belongs there.
+    """
+    groups = groups_of((branch.from_node, branch.to_node) for branch in way.network.branches if branch.kind == "neutral")
+    behind = way.own.aboard | {part_id for part_id, _ in way.hookup.links}
+    shore = {groups.get(f"{part.id}.N", "") for part in way.receptacles}
+    found: list[Objection] = []
+    for branch in way.network.branches:
+        ends = {groups.get(branch.from_node), groups.get(branch.to_node)}
+        if branch.kind == "bond" and base(branch.owner) in behind and not shore.isdisjoint(ends):
+            found.append(Objection("bond_aboard", base(branch.owner), abs(branch.impedance), "ohm"))
     return found
 
 
@@ -259,6 +276,7 @@ RULES: tuple[Callable[[Wired], list[Objection]], ...] = (
     _joined_neutrals,
     _shared_neutral,
     _without_ground,
+    _bond_aboard,
     _trips_unloaded,
     _undersized,
     _live_blades,

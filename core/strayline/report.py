@@ -31,6 +31,7 @@ RULES = {
     "joined_neutrals": "two neutrals meet, so each outlet loses sight of its own return",
     "shared_neutral": "both lines are in phase, so the common neutral may carry more than it is made for, and no breaker watches it",
     "no_protective_conductor": "its ground does not reach the dock's",
+    "bond_aboard": "ties the neutral to ground aboard, where only the shore may",
     "trips_unloaded": "trips with every load off",
     "undersized": "rated for less than the breaker ashore",
     "live_blades": "bare blades are live",

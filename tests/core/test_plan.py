@@ -324,6 +324,45 @@ def test_a_bond_aboard_makes_a_detector_a_caution() -> None:
 # --- may it be used ------------------------------------------------------------------------------------------------
 
 
+def test_a_neutral_tied_to_ground_aboard_must_not_be_used() -> None:
+    """A bond at the panel, a welded inverter and a generator whose neutral is not switched forbid the way; a transformer's own does not."""
+    rows = [*dock({"id": "outlet"}), cord(), *boat(kettle())]
+    assert "bond_aboard" in rules(planned(rows, {"cause": "panel_bond", "at": "panel", "ohms": 0.1})[0])
+    assert "bond_aboard" not in rules(planned(rows)[0])
+    for state, tied in (("welded", True), ("passing", False)):
+        assert ("bond_aboard" in rules(planned(behind({"id": "box", "kind": "inverter", "state": state}))[0])) == tied
+    for switched, tied in ((False, True), (True, False)):
+        generator = {"id": "genset", "kind": "generator"}
+        transfer = {"id": "box", "kind": "transfer", "from": ["main", "genset"], "switched_neutral": switched}
+        assert ("bond_aboard" in rules(planned(behind(generator, transfer))[0])) == tied
+    assert planned(behind({"id": "box", "kind": "transformer"}))[0]["use"] == MAY
+
+
+def behind(*parts: dict[str, Any]) -> Rows:
+    """One cord to a boat whose panel hangs on the part named box, that on the main unless told."""
+    panel = next(number for number, row in enumerate(boat()) if row["kind"] == "panel")
+    rows = boat(kettle())
+    rows[panel] = {**rows[panel], "from": "box"}
+    return [
+        *dock({"id": "outlet"}),
+        cord(),
+        *rows[:panel],
+        *({"from": "main", **part} if part["kind"] != "generator" else part for part in parts),
+        *rows[panel:],
+    ]
+
+
+@pytest.mark.parametrize("ohms", [0.02, 1.0])
+def test_an_isolator_that_blocks_hides_a_bond_from_the_devices_and_not_from_the_plan(ohms: float) -> None:
+    """Behind a galvanic isolator the states settle one by one, the numbers are those of `residuals`, and the bond is still told."""
+    rows, bond = behind({"id": "box", "kind": "isolator"}), {"cause": "panel_bond", "at": "panel", "ohms": ohms}
+    way = planned(rows, bond)[0]
+    assert "bond_aboard" in rules(way)
+    expected = {sensor["id"]: sensor for sensor in residuals(told(connected_rows(rows, way, None), [bond]))["sensors"]}
+    for sensor in way["all_on"]:
+        assert sensor["residual_ma"] == pytest.approx(expected[sensor["id"]]["residual_ma"], rel=1e-9, abs=1e-9)
+
+
 def test_home_made_must_not_be_used() -> None:
     """A way with a home-made adapter must not be used, whatever holds; the same with a made one may."""
     rows = [adapter("step", "homemade", "outlet"), cord(hung="step"), *boat(kettle(), inlet="cord")]
@@ -364,13 +403,6 @@ def test_no_reversal_is_claimed_where_both_poles_stand_away_from_ground() -> Non
     outlet = {"id": "outlet", "connector": "16a_230v", "device": "rcd_30"}
     rows = [*dock(outlet, system="it_230"), cord(plug="16a_230v"), *boat(kettle(), plug="16a_230v")]
     assert not {"reversed_outlet", "reversed"} & rules(planned(rows)[0])
-
-
-def test_a_dead_device_watches_nothing() -> None:
-    """An outlet whose device never opens holds because nothing is watching, and must not be used."""
-    way = planned([*dock({"id": "outlet", "device": "dead"}), cord(), *boat(kettle())])[0]
-    assert (way["holds"], way["use"]) == (UNWATCHED, MUST_NOT)
-    assert rules(way) == {"dead_device"}
 
 
 def test_a_cord_behind_a_bigger_breaker_must_not_be_used() -> None:
@@ -416,6 +448,9 @@ def test_an_isolated_combiner_may_be_used() -> None:
     rows = [*dock(*TWO), adapter("box", "isolated_combiner", "", ""), cord(plug=FIFTY), *boat(kettle(), across, plug=FIFTY)]
     way = planned(rows)[0]
     assert (way["holds"], way["use"], way["reasons"]) == ("holds", MAY, [])
+    assert [line["line"] for line in way["lines"]] == ["L1", "L1"]
+    same = planned([*dock({"id": "outlet_a"}, {"id": "outlet_b"}), *rows[5:]])[0]
+    assert "shared_neutral" in rules(same)
 
 
 def test_an_open_ground_must_not_be_used() -> None:
