@@ -12,6 +12,7 @@ import pytest
 from strayline import plan as planning
 from strayline import solve
 from strayline.casefile import Case, read_case
+from strayline.components import ADAPTERS, CONNECTORS, SYSTEMS
 from strayline.errors import CaseError
 from strayline.plan import MAY, MUST_NOT, plan
 from strayline.report import RULES, plan_text
@@ -228,6 +229,31 @@ def test_a_connector_nobody_stated_is_assumed_aloud() -> None:
     assert found["assumed"] == [{"part": "cord", "connector": "30a_125v"}]
     assert "connector_assumed" in rules(found["ways"][0], "cautions")
     assert found["ways"][0]["use"] == MAY
+
+
+EVERY_OUTLET = [(system, name) for name, connector in CONNECTORS.items() for system in connector.volts]
+
+
+@pytest.mark.parametrize(("system", "name"), EVERY_OUTLET, ids=map("-".join, EVERY_OUTLET))
+def test_every_outlet_of_every_supply_feeds_a_boat(system: str, name: str) -> None:
+    """With a cord and an inlet of its own kind every outlet makes a way that holds, has no objection and leaves power on every line."""
+    rows = [*dock({"id": "outlet", "connector": name}, system=system), cord(plug=name), *boat(kettle(), plug=name)]
+    (way,) = planned(rows)
+    assert (way["holds"], way["use"]) == ("holds", MAY)
+    assert len(way["lines"]) == CONNECTORS[name].lines or len(way["lines"]) == len(SYSTEMS[system].lines)
+    assert all(0 < line["left_a"] < line["limit_a"] for line in way["lines"] if line["line"] == "L1")
+
+
+@pytest.mark.parametrize("style", [style for style in ADAPTERS if style != "homemade"])
+def test_every_adapter_makes_a_way(style: str) -> None:
+    """Every adapter stands between outlets that take its plugs and a boat with an inlet of its outlet's kind, and makes a way there."""
+    kind = ADAPTERS[style]
+    system = "three_230_400" if CONNECTORS[kind.plugs[0]].lines == 3 else "single_230" if "230v" in kind.plugs[0] else "split_120_240"
+    outlets = [{"id": f"outlet_{leg}", "connector": plug, "leg": leg} for leg, plug in zip(("L1", "L2"), kind.plugs, strict=False)]
+    shore = dock(*({**outlet, "id": outlet["id"].lower()} for outlet in outlets), system=system)
+    plug = kind.outlets[0]
+    ways = planned([*shore, adapter("step", style, *("" for _ in kind.plugs)), cord(plug=plug), *boat(kettle(), plug=plug)])
+    assert any("step" in [link["part"] for link in way["connections"]] for way in ways)
 
 
 # --- does it hold --------------------------------------------------------------------------------------------------
