@@ -431,6 +431,13 @@ def test_no_reversal_is_claimed_where_both_poles_stand_away_from_ground() -> Non
     assert not {"reversed_outlet", "reversed"} & rules(planned(rows)[0])
 
 
+def test_a_dead_device_watches_nothing() -> None:
+    """An outlet whose device never opens holds because nothing is watching, and must not be used."""
+    way = planned([*dock({"id": "outlet", "device": "dead"}), cord(), *boat(kettle())])[0]
+    assert (way["holds"], way["use"]) == (UNWATCHED, MUST_NOT)
+    assert rules(way) == {"dead_device"}
+
+
 def test_a_cord_behind_a_bigger_breaker_must_not_be_used() -> None:
     """30 A of cord behind 50 A of breaker is forbidden, a caution where the main aboard is rated 30 A, and nothing behind 30 A."""
     rows = [adapter("step", "straight_50_30"), cord()]
