@@ -10,6 +10,7 @@ import math
 from dataclasses import dataclass
 
 from strayline.appliances import APPLIANCES
+from strayline.devices import DEVICES, WAVEFORMS
 
 NUMBER, CHOICE, FLAG, REFERENCE, REFERENCES = "number", "choice", "flag", "reference", "references"
 REQUIRED = object()
@@ -148,7 +149,6 @@ ADAPTERS: dict[str, Adapter] = {
 # How a home-made or damaged adapter is really wired: the two conductors that have changed places, or the one that is not there.
 WIRED = ("straight", "line_neutral", "neutral_ground", "line_ground", "ground_open")
 
-DEVICE_CHOICES = ("none", "class_a", "gfpe_30", "elci_30", "rcd_30", "rcd_100_s", "gfpe_100")
 ACROSS = ("L1-N", "L2-N", "L3-N", "L1-L2", "L2-L3", "L1-L3")
 CURVES = ("b", "c", "d", "na")  # IEC 60898-1 magnetic releases; "na" has no letter
 
@@ -167,12 +167,14 @@ _GROUND = Parameter("ground_ohms", NUMBER, "ohm", None, 1e-9, 1e6)
 _CONNECTOR = Parameter("connector", CHOICE, "", None, choices=tuple(CONNECTORS))
 _RATED = Parameter("rated_a", NUMBER, "A", None, 1.0, 400.0)
 _CURVE = Parameter("curve", CHOICE, "", None, choices=CURVES)
+_WAVEFORM = Parameter("waveform", CHOICE, "", None, choices=tuple(WAVEFORMS), source="IEC 60755, IEC 62423")
+_DELAY = Parameter("delay_s", NUMBER, "s", None, 0.0, 5.0)
 _NON_OPERATING = Parameter("non_operating_ma", NUMBER, "mA", None, 0.1, 1e5)
 _OPERATING = Parameter("operating_ma", NUMBER, "mA", None, 0.1, 1e5)
 
 
 def _device(default: str) -> Parameter:
-    return Parameter("device", CHOICE, "", default, choices=DEVICE_CHOICES)
+    return Parameter("device", CHOICE, "", default, choices=tuple(DEVICES))
 
 
 def _wire(length_m: float, area_mm2: float) -> tuple[Parameter, ...]:
@@ -208,7 +210,7 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         Parameter("source_earth_ohms", NUMBER, "ohm", 5.0, 1e-9, 1e6),
         Parameter("line_nf", NUMBER, "nF", 300.0, 0.01, 1e5),
     ),
-    "feeder": (_FROM, _device("gfpe_100"), _NON_OPERATING, _OPERATING, *_wire(60.0, 50.0)),
+    "feeder": (_FROM, _device("gfpe_100"), _NON_OPERATING, _OPERATING, _WAVEFORM, _DELAY, *_wire(60.0, 50.0)),
     "pedestal": (_FROM, *_short(0.001)),
     "receptacle": (
         _FROM,
@@ -218,6 +220,8 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         _device("gfpe_30"),
         _NON_OPERATING,
         _OPERATING,
+        _WAVEFORM,
+        _DELAY,
         _RATED,
         _CURVE,
         Parameter("closed", FLAG, "", True),
@@ -255,6 +259,8 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         _device("elci_30"),
         _NON_OPERATING,
         _OPERATING,
+        _WAVEFORM,
+        _DELAY,
         _RATED,
         _CURVE,
         Parameter("poles", NUMBER, "", 2, 1, 2, whole=True),
@@ -283,6 +289,8 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         _device("none"),
         _NON_OPERATING,
         _OPERATING,
+        _WAVEFORM,
+        _DELAY,
         _RATED,
         _CURVE,
         Parameter("poles", NUMBER, "", 1, 1, 2, whole=True),

@@ -6,6 +6,7 @@ it, so no trip probability here is ever 0 or 1.
 
 from __future__ import annotations
 
+import itertools
 import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
@@ -19,8 +20,21 @@ FLOOR, CEILING = 0.002, 0.995  # least and greatest probability that a device op
 EDGE_SHARE = 0.01  # share of devices whose own threshold lies outside either end of its stated band; a judgement
 SHARPEST_BAND = 1.05  # no device repeats its own threshold better than about 5 %; common practice
 WINDOW_OHM = (0.5, 8.0)  # loop ohms: nearly every / nearly no grounded-neutral detector trips. Middle 2 ohm; low confidence
+UNPUBLISHED_S = 0.2  # longest time of a device that publishes none, and of a Class A device, whose law is a ceiling; common practice
+QUICKEST = 0.1  # share of its longest time in which an instantaneous device may open already; common practice
+DELAY_SPREAD_S = 0.1  # by how much a set delay is overrun; common practice
+CONVENTIONAL: dict[str, tuple[float, float]] = {  # holds / trips after long, multiples of the rating
+    "b": (1.13, 1.45), "c": (1.13, 1.45), "d": (1.13, 1.45),  # IEC 60898-1
+    "na": (1.0, 1.35),  # UL 489 (from memory)
+}  # fmt: skip
 THERMAL_BAND = (1.13, 1.35)  # multiples of the rating after a long time: IEC 60898-1 holds, UL 489 trips (up to 50 A)
-MAGNETIC_BANDS: dict[str, tuple[float, float]] = {"b": (3.0, 5.0), "c": (5.0, 10.0), "d": (10.0, 20.0)}  # IEC 60898-1
+# IEC 60898-1; North American breakers publish no band, "na" is common practice
+MAGNETIC_BANDS: dict[str, tuple[float, float]] = {
+    "b": (3.0, 5.0),
+    "c": (5.0, 10.0),
+    "d": (10.0, 20.0),
+    "na": (5.0, 10.0),
+}
 
 PATTERNS: tuple[str, ...] = ("none", "pedestal", "aboard", "both", "feeder")
 
@@ -45,6 +59,10 @@ def _stairs(*steps: tuple[float, float]) -> Callable[[float], float]:
     return longest_break_s
 
 
+def _at_once(_residual_ma: float) -> float:
+    return 0.0
+
+
 @dataclass(frozen=True, slots=True)
 class Device:
     """One kind of ground-fault protective device.
@@ -54,8 +72,9 @@ class Device:
     operating_ma     -- at or above this residual it should trip, mA RMS
     break_time_s     -- law: residual in mA -> longest permitted seconds; infinite where none is published or it may hold
     grounded_neutral -- probability that this one detects a grounded neutral on its load side
-    delayed          -- it waits on purpose so that a device downstream opens first
+    delay_s          -- seconds it waits on purpose so that a device downstream opens first, where the case says nothing; 0 for none
     source           -- where the values come from
+    holds_s          -- law: residual in mA -> seconds for which it must not open yet (selective devices); else 0
     """
 
     id: str
@@ -64,36 +83,76 @@ class Device:
     operating_ma: float
     break_time_s: Callable[[float], float]
     grounded_neutral: float
-    delayed: bool
+    delay_s: float
     source: str
+    holds_s: Callable[[float], float] = _at_once
+
+
+def _rcd(rated_ma: float) -> Device:
+    """A general RCD (IEC 61008-1 table 1): holds to half its rating; 300, 150 and 40 ms at one, two and five times it."""
+    times = _stairs((rated_ma, 0.300), (2 * rated_ma, 0.150), (5 * rated_ma, 0.040))
+    return Device(f"rcd_{rated_ma:.0f}", rated_ma, rated_ma / 2, rated_ma, times, 0.0, 0.0, "IEC 61008-1 table 1, general type")
+
+
+def _selective_rcd(rated_ma: float) -> Device:
+    """A selective RCD, type S: it waits 130, 60 and 50 ms and opens within 500, 200 and 150 ms at one, two and five times its rating."""
+    longest = _stairs((rated_ma, 0.500), (2 * rated_ma, 0.200), (5 * rated_ma, 0.150))
+    shortest = _stairs((rated_ma, 0.130), (2 * rated_ma, 0.060), (5 * rated_ma, 0.050))
+    source = "IEC 61008-1 table 1, type S (60 ms at twice the rating from memory)"
+    return Device(f"rcd_{rated_ma:.0f}_s", rated_ma, rated_ma / 2, rated_ma, longest, 0.0, 0.130, source, shortest)
 
 
 _TABLE: tuple[Device, ...] = (
-    Device("class_a", 5.0, 4.0, 6.0, class_a_longest_break_s, 1.0, False, "UL 943: holds below 4 mA, trips from 6 mA"),
+    Device("class_a", 5.0, 4.0, 6.0, class_a_longest_break_s, 1.0, 0.0, "UL 943: holds below 4 mA, trips from 6 mA"),
+    Device("class_c", 20.0, 15.0, 20.0, class_a_longest_break_s, 0.5, 0.0, "UL 943C: 20 mA class (band and time law from memory)"),
     Device(
-        "elci_30", 30.0, 15.0, 30.0, _stairs((30.0, 0.100)), 0.8, False,
+        "elci_30", 30.0, 15.0, 30.0, _stairs((30.0, 0.100)), 0.8, 0.0,
         "ABYC E-11: at most 30 mA and 100 ms; no non-operating value published, half the rating taken from IEC",
     ),
     Device(
-        "gfpe_30", 30.0, 15.0, 30.0, _stairs(), 0.5, False,
+        "gfpe_30", 30.0, 15.0, 30.0, _stairs(), 0.5, 0.0,
         "NEC 555.35 with UL 1053: at most 30 mA, no time; no non-operating value published, half the rating taken from IEC",
     ),
     Device(
-        "rcd_30", 30.0, 15.0, 30.0, _stairs((30.0, 0.300), (60.0, 0.150), (150.0, 0.040)), 0.0, False,
-        "IEC 61008-1 table 1, general type",
+        "gfpe_100", 100.0, 50.0, 100.0, _stairs(), 0.3, 0.2,
+        "NEC 555.35 feeder: at most 100 mA, delay set on site (0 to 1 s, common practice); half the rating taken from IEC",
     ),
-    Device(
-        "rcd_100_s", 100.0, 50.0, 100.0, _stairs((100.0, 0.500), (200.0, 0.200), (500.0, 0.150)), 0.0, True,
-        "IEC 61008-1 table 1, type S",
-    ),
-    Device(
-        "gfpe_100", 100.0, 50.0, 100.0, _stairs(), 0.3, True,
-        "NEC 555.35 feeder: at most 100 mA, delay set on site; half the rating taken from IEC",
-    ),
-    Device("none", 0.0, math.inf, math.inf, _stairs(), 0.0, False, "no device"),
+    *(_rcd(rated_ma) for rated_ma in (10.0, 30.0, 100.0, 300.0)),
+    *(_selective_rcd(rated_ma) for rated_ma in (100.0, 300.0)),  # type S exists above 30 mA only
+    Device("dead", 0.0, math.inf, math.inf, _stairs(), 0.0, 0.0, "a device that is there and no longer opens"),
+    Device("none", 0.0, math.inf, math.inf, _stairs(), 0.0, 0.0, "no device"),
 )  # fmt: skip
 
 DEVICES: dict[str, Device] = {device.id: device for device in _TABLE}
+
+
+@dataclass(frozen=True, slots=True)
+class Waveform:
+    """A type of residual-current device by what else than a sine of the supply's frequency it copes with.
+
+    pulsating -- it trips on pulsating direct current; mixed -- its band holds for the mixed frequencies of drives
+    smooth_dc -- (mA, share of the rating): smooth direct current up to the greater of the two leaves it working; beyond, it is blinded
+    """
+
+    id: str
+    pulsating: bool
+    mixed: bool
+    smooth_dc: tuple[float, float]
+    source: str
+
+
+WAVEFORMS: dict[str, Waveform] = {
+    "ac": Waveform("ac", False, False, (0.0, 0.0), "IEC 60755"),
+    "a": Waveform("a", True, False, (6.0, 0.0), "IEC 60755"),
+    "f": Waveform("f", True, True, (10.0, 0.0), "IEC 62423"),
+    "b": Waveform("b", True, True, (10.0, 0.4), "IEC 62423"),
+}
+
+
+def smooth_dc_limit_ma(waveform: Waveform, rated_ma: float) -> float:
+    """Smooth direct current in mA that leaves a device of this type and rating working."""
+    least, share = waveform.smooth_dc
+    return max(least, share * rated_ma)
 
 
 def operating_band_ma(device: Device, non_operating_ma: float | None = None, operating_ma: float | None = None) -> tuple[float, float]:
@@ -225,26 +284,57 @@ def opening_patterns(probabilities: Mapping[str, float], delayed: Collection[str
     return patterns
 
 
-def first_to_open(wanting: Mapping[str, tuple[float, bool]]) -> dict[str, float]:
+def opening_times_s(device: Device, residual_a: float, delay_s: float | None = None) -> tuple[float, float]:
+    """Between which seconds a device that does open on this residual (A RMS) opens.
+
+    At most its law's time, or UNPUBLISHED_S where that is shorter or there is none; at least what a selective one must wait, a set
+    delay, or a tenth of the longest. Where the residual only may trip it, the law is taken at its operating value.
+    """
+    ma = max(residual_a * 1e3, device.operating_ma if math.isfinite(device.operating_ma) else 0.0)
+    held = device.holds_s(ma)
+    if held:
+        return held, device.break_time_s(ma)
+    set_s = device.delay_s if delay_s is None else delay_s
+    longest = min(device.break_time_s(ma), UNPUBLISHED_S)
+    return (set_s, set_s + DELAY_SPREAD_S) if set_s else (QUICKEST * longest, longest)
+
+
+def overcurrent_verdict(rated_a: float, line_a: float, inrush_a: float, curve: str) -> str:
+    """What a thermal-magnetic breaker does after long with `line_a`, or at a start with `inrush_a` (A RMS): holds, may trip, trips."""
+    holds, trips = CONVENTIONAL[curve]
+    at_once = MAGNETIC_BANDS[curve]
+    if line_a >= trips * rated_a or inrush_a >= at_once[1] * rated_a:
+        return "trips"
+    return "holds" if line_a <= holds * rated_a and inrush_a <= at_once[0] * rated_a else "may trip"
+
+
+STEPS_BETWEEN = 24  # of Simpson's rule between two moments at which a device begins or ceases to open
+
+
+def first_to_open(wanting: Mapping[str, tuple[float, tuple[float, float]]]) -> dict[str, float]:
     """Probability that each device is the first to open: id -> probability; what is missing from one is that none opens.
 
-    `wanting` -- id -> (probability that its residual makes it trip, whether it waits on purpose)
+    `wanting` -- id -> (probability that it opens at all, (seconds from which, seconds by which it has opened if it does))
 
-    A model of the race, not a timing law: each wants to open independently, and an instantaneous device is ten times as quick on
-    average as one that waits (exponential times). The integral over u = exp(-t) of p r u^(r-1) prod(1 - p + p u^r) is a polynomial's,
-    taken by Simpson's rule.
+    A model of the race: each opens independently, at a moment uniform between its two times. So a device that has surely opened before
+    another may begin is first whenever it opens (selectivity), and two instantaneous ones are not coordinated. P(i first) is the
+    integral of p_i f_i(t) prod(1 - p_j F_j(t)) over t, piecewise a polynomial, by Simpson's rule between the times.
     """
-    pace = {name: 1 if delayed else 10 for name, (_, delayed) in wanting.items()}
-    steps = 400
-    found = {}
-    for name, (chance, _) in wanting.items():
-        values = []
-        for step in range(steps + 1):
-            u = step / steps
-            product = chance * pace[name] * u ** (pace[name] - 1)
-            for other, (other_chance, _) in wanting.items():
-                if other != name:
-                    product *= 1 - other_chance + other_chance * u ** pace[other]
-            values.append(product)
-        found[name] = (values[0] + values[-1] + 4 * math.fsum(values[1:-1:2]) + 2 * math.fsum(values[2:-1:2])) / (3 * steps)
+    moments = sorted({moment for _, times in wanting.values() for moment in times})
+    found = dict.fromkeys(wanting, 0.0)
+
+    def opened(name: str, moment: float) -> float:
+        chance, (begin, end) = wanting[name]
+        return chance * min(max((moment - begin) / (end - begin), 0.0), 1.0)
+
+    for early, late in itertools.pairwise(moments):
+        for name, (chance, (begin, end)) in wanting.items():
+            if not begin <= early < late <= end:
+                continue
+            values = [
+                math.prod(1.0 - opened(other, early + (late - early) * step / STEPS_BETWEEN) for other in wanting if other != name)
+                for step in range(STEPS_BETWEEN + 1)
+            ]
+            mean = (values[0] + values[-1] + 4.0 * math.fsum(values[1:-1:2]) + 2.0 * math.fsum(values[2:-1:2])) / (3.0 * STEPS_BETWEEN)
+            found[name] += chance * (late - early) / (end - begin) * mean
     return found

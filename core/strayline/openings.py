@@ -39,7 +39,7 @@ def device_states(watched: Sequence[Watch], facts: Mapping[str, str]) -> tuple[D
     for role in ("pedestal", "aboard"):
         device = devices.DEVICES[kinds.get(role, "none")]
         unknown = facts.get(f"{role}_device", "unknown") == "unknown"
-        missing = 1.0 if device.id == "none" else ABSENT[role] if unknown else DEAD_SHARE
+        missing = 1.0 if not device.rated_ma else ABSENT[role] if unknown else DEAD_SHARE
         works = 1 - missing
         shares[role] = {DEAD: missing, WORKS: works * (1 - device.grounded_neutral), DETECTS: works * device.grounded_neutral}
     return tuple(

@@ -89,6 +89,13 @@ class Installation:
         return frozenset(found)
 
 
+def breaker_rating_a(part: Part) -> float | None:
+    """Rated amperes of the breaker a part holds: stated, or by the type of an outlet; None without one."""
+    if part.kind == "receptacle":
+        return part.number("rated_a") or CONNECTORS[part.text("connector")].rated_a
+    return part.number("rated_a") if "rated_a" in part.values else None
+
+
 def splits(part: Part) -> bool:
     """Whether a part is an adapter with two outlets, its tails `.a` and `.b`."""
     return part.kind == "adapter" and ADAPTERS[part.text("style")].wiring == "split"

@@ -16,10 +16,10 @@ from strayline import contexts, solve
 from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE, CAUSES
 from strayline.causes import Effect, Fault, Shunt, effect
-from strayline.components import CONNECTORS, LINES, SYSTEMS
+from strayline.components import LINES, SYSTEMS
 from strayline.installation import build
 from strayline.network import Network, nodes
-from strayline.parts import Installation, Part, base
+from strayline.parts import Installation, Part, base, breaker_rating_a
 from strayline.severities import severities
 from strayline.wiring import EARTH
 
@@ -145,16 +145,14 @@ def watches(installation: Installation) -> tuple[Watch, ...]:
     found += [("pedestal", part) for part in mine if part.kind == "receptacle" and installation.children(part.id)]
     found += [("aboard", part) for part in mine if part.kind == "main"]
     return tuple(
-        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), rated_a(part))
+        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), _rated_a(part))
         for role, part in found
     )
 
 
-def rated_a(part: Part) -> float:
+def _rated_a(part: Part) -> float:
     """Rated amperes of a receptacle's breaker (0 for other parts)."""
-    if part.kind != "receptacle":
-        return 0.0
-    return part.number("rated_a") or CONNECTORS[part.text("connector")].rated_a
+    return breaker_rating_a(part) or 0.0 if part.kind == "receptacle" else 0.0
 
 
 def _outlooks(installation: Installation, points: tuple[Point, ...], context: str) -> tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None:

@@ -7,19 +7,24 @@ from typing import TYPE_CHECKING, Any
 from strayline import devices, solve
 from strayline.boat import own_parts
 from strayline.causes import applied
+from strayline.components import LINES
 from strayline.errors import CaseError
-from strayline.installation import build
-from strayline.parts import Installation, base, read
+from strayline.installation import build, zone_parts
+from strayline.parts import Installation, Part, base, breaker_rating_a, read
 from strayline.phasor import angle_deg, shown_angle
 from strayline.settle import settled
 
 if TYPE_CHECKING:
-    from collections.abc import Collection
+    from collections.abc import Collection, Iterable
 
     from strayline.casefile import Case
+    from strayline.causes import Fault
     from strayline.network import Branch, Network
 
 LIKELY = 0.01  # a device below this is left out of the race
+USUAL_WAVEFORM = "a"  # what nobody states; North American devices have no letter and are taken as such (common practice)
+LONG_MINUTES = 60.0  # the hour of the conventional currents, IEC 60898-1
+THERMAL_S, AT_START_S = (5.0, 3600.0), (0.005, 0.05)  # when a breaker opens: warmed through, or by its magnetic release (common practice)
 CROSSING_KINDS = {
     "neutral": "other cord's neutral",
     "line": "other cord's line",
@@ -40,7 +45,8 @@ def stated_network(case: Case) -> tuple[Installation, Network]:
 def residuals(case: Case) -> dict[str, Any]:
     """The reply of `core residuals`: plain JSON values, nothing rounded, every key present.
 
-    Angles are in degrees, None below one microampere; volts are against the water far from any boat.
+    Angles are in degrees, None below one microampere; volts are against the water far from any boat. `breakers` holds every
+    thermal-magnetic breaker of a known rating, with the line current it carries and the worst single start of a load behind it.
     """
     installation, network = stated_network(case)
     solution = solve.solve(network)
@@ -48,24 +54,74 @@ def residuals(case: Case) -> dict[str, Any]:
     for sensor in network.sensors:
         part, device = installation.part(sensor.id), devices.DEVICES[sensor.device]
         residual = solution.residual(sensor.id)
-        band = (part.number("non_operating_ma"), part.number("operating_ma"))
+        band = _band(part, device, installation, case.faults)
         sensors.append({
             "id": sensor.id, "residual_ma": abs(residual) * 1e3, "angle_deg": shown_angle(residual), "rating_ma": device.rated_ma or None,
             "verdict": devices.verdict(device, abs(residual), *band),
         })  # fmt: skip
         chance = devices.trip_probability(device, abs(residual), non_operating_ma=band[0], operating_ma=band[1])
         if chance > LIKELY and device.rated_ma:
-            race[sensor.id] = (chance, device.delayed)
+            race[sensor.id] = (chance, devices.opening_times_s(device, abs(residual), part.number("delay_s")))
+    breakers = _breakers(installation, solution)
+    for row in breakers:
+        chance = row.pop("chance")
+        if chance > LIKELY and chance > race.get(row["id"], (0.0,))[0]:
+            race[row["id"]] = (chance, AT_START_S if row["inrush_a"] > row["line_a"] else THERMAL_S)
     volts = [(name, solution.voltage(node)) for name, node in network.hulls]
     blades = [(blade.id, solution.voltage(blade.node)) for blade in network.blades]
     return {
         "sensors": sensors,
+        "breakers": breakers,
         "hulls": [{"id": name, "volts": abs(value), "angle_deg": angle_deg(value)} for name, value in volts if value is not None],
         "live_blades": [{"id": name, "volts": abs(value)} for name, value in blades if value is not None],
         "opens_first": [{"id": name, "probability": chance} for name, chance in devices.first_to_open(race).items()],
         "crossings": _crossings(installation, network, solution),
         "floating": list(solution.floating),
     }
+
+
+def _band(part: Part, device: devices.Device, installation: Installation, faults: Iterable[Fault]) -> tuple[float | None, float | None]:
+    """A device's operating band in mA, moved by what its type of waveform does not cope with among the stated faults."""
+    scale = 1.0
+    waveform = devices.WAVEFORMS[part.text("waveform") if part.values["waveform"] is not None else USUAL_WAVEFORM]
+    for fault in faults:
+        at_it = fault.at == part.id if fault.cause == "touchy_device" else fault.at in zone_parts(installation, part)
+        copes = {"touchy_device": False, "drive_leakage": waveform.mixed, "rectified_leakage": waveform.smooth_dc[1] > 0.0}
+        if at_it and not copes.get(fault.cause, True):
+            scale *= fault.scale
+    low, high = part.number("non_operating_ma"), part.number("operating_ma")
+    if scale == 1.0 or not device.rated_ma:
+        return low, high
+    low, high = devices.operating_band_ma(device, low, high)
+    return low * scale, high * scale
+
+
+def _breakers(installation: Installation, solution: solve.Solution) -> list[dict[str, Any]]:
+    """One row for each thermal-magnetic breaker; "chance" is the probability that it opens within an hour, or at the start."""
+    hertz = solution.network.hertz
+    present = {branch.id for branch in solution.network.branches}
+    found = []
+    for part in installation.of_kind("receptacle", "main", "breaker"):
+        rated = breaker_rating_a(part)
+        if rated is None:
+            continue
+        carried = {line: abs(solution.current(name)) for line in LINES if (name := f"{part.id}.{line}") in present}
+        line_a = max(carried.values(), default=0.0)
+        below = [installation.part(one) for one in installation.downstream(part.id)] if carried else []
+        starts = [
+            ((load.number("inrush") or 1.0) - 1.0) * abs(solution.current(f"{load.id}.switch"))
+            for load in below
+            if load.kind == "load" and load.values["inrush"] is not None and f"{load.id}.switch" in present
+        ]
+        inrush_a = line_a + max(starts, default=0.0)
+        curve = part.text("curve") if part.values["curve"] is not None else "na" if hertz == 60.0 else "c"
+        slow = devices.overcurrent_probability(rated, line_a, LONG_MINUTES)
+        at_once = devices.inrush_probability(rated, inrush_a, curve) if starts else 0.0
+        found.append({
+            "id": part.id, "line_a": line_a, "inrush_a": inrush_a, "rating_a": rated,
+            "verdict": devices.overcurrent_verdict(rated, line_a, inrush_a, curve), "chance": 1.0 - (1.0 - slow) * (1.0 - at_once),
+        })  # fmt: skip
+    return found
 
 
 def _crossings(installation: Installation, network: Network, solution: solve.Solution) -> list[dict[str, Any]]:

@@ -11,21 +11,27 @@ from hypothesis import strategies as st
 
 from strayline.devices import (
     CEILING,
+    CONVENTIONAL,
     DEVICES,
     FLOOR,
     MAGNETIC_BANDS,
     PATTERNS,
+    WAVEFORMS,
     class_a_longest_break_s,
+    first_to_open,
     inrush_probability,
     opening_patterns,
+    opening_times_s,
     operating_band_ma,
     overcurrent_probability,
+    overcurrent_verdict,
+    smooth_dc_limit_ma,
     trip_probability,
     verdict,
 )
 from strayline.errors import CaseError
 
-WATCHING = [device for device in DEVICES.values() if device.id != "none"]
+WATCHING = [device for device in DEVICES.values() if device.rated_ma]
 POSITIONS = ("feeder", "pedestal", "aboard")
 shares = st.floats(0.0, 1.0)
 residuals_a = st.floats(0.0, 1e4)
@@ -44,7 +50,7 @@ def test_verdict_at_the_edges(id_: str, low_ma: float, high_ma: float) -> None:
     assert verdict(device, high_ma / 1000) == "trips"
 
 
-@pytest.mark.parametrize("device", [device for device in WATCHING if device.id != "class_a"], ids=lambda device: device.id)
+@pytest.mark.parametrize("device", [device for device in WATCHING if device.id not in ("class_a", "class_c")], ids=lambda device: device.id)
 def test_default_band_is_half_and_whole_rating(device) -> None:
     """Where nothing else is said a device holds up to half its rating and trips from its rating on."""
     assert operating_band_ma(device) == (device.rated_ma / 2, device.rated_ma)
@@ -67,11 +73,12 @@ def test_impossible_band(low: float, high: float | None) -> None:
         verdict(DEVICES["gfpe_30"], 0.01, low, high)
 
 
-@given(residuals_a)
-def test_nothing_watches(residual_a: float) -> None:
-    """Where no device watches the verdict is "unprotected" and a trip stays barely possible, whatever the residual."""
-    assert verdict(DEVICES["none"], residual_a) == "unprotected"
-    assert trip_probability(DEVICES["none"], residual_a, window_siemens=10, grounded_neutral=True) == FLOOR > 0
+@pytest.mark.parametrize("id_", ["none", "dead"])
+@given(residual_a=residuals_a)
+def test_nothing_watches(id_: str, residual_a: float) -> None:
+    """Where no device works the verdict is "unprotected" and a trip stays barely possible, whatever the residual."""
+    assert verdict(DEVICES[id_], residual_a) == "unprotected"
+    assert trip_probability(DEVICES[id_], residual_a, window_siemens=10, grounded_neutral=True) == FLOOR > 0
 
 
 @given(st.sampled_from(WATCHING), residuals_a, residuals_a, st.floats(0, 1e4), st.booleans())
@@ -225,3 +232,70 @@ def test_a_delayed_device_lets_the_other_open_first() -> None:
     patterns = opening_patterns({"pedestal": 1.0, "aboard": 1.0}, {"pedestal"})
     assert patterns["aboard"] > 0.8
     assert min(patterns["pedestal"], patterns["both"]) > 0
+
+
+# --- which opens first ----------------------------------------------------------------------------------------------
+
+
+def racing(*ids: str, residual_a: float, chance: float = 1.0) -> dict[str, float]:
+    """Who opens first of devices in series that see one residual, each opening with this chance."""
+    return first_to_open({id_: (chance, opening_times_s(DEVICES[id_], residual_a)) for id_ in ids})
+
+
+def test_a_selective_device_upstream_leaves_it_to_the_general_one_below() -> None:
+    """At five times its rating a 30 mA RCD has opened (40 ms) before a type S may begin (50 ms): it is first whenever it opens."""
+    assert racing("rcd_30", "rcd_100_s", residual_a=0.5) == pytest.approx({"rcd_30": 1, "rcd_100_s": 0}, abs=1e-12)
+    assert racing("rcd_30", "rcd_100_s", residual_a=0.5, chance=0.6) == pytest.approx({"rcd_30": 0.6, "rcd_100_s": 0.24}, abs=1e-12)
+
+
+def test_equal_devices_share_the_race() -> None:
+    """Two alike are each first as often as the other, and that nobody opens is what is missing from one."""
+    first = first_to_open(dict.fromkeys(("pedestal", "aboard"), (0.7, (0.01, 0.1))))
+    assert first["pedestal"] == pytest.approx(first["aboard"], abs=1e-12)
+    assert sum(first.values()) == pytest.approx(1 - 0.3 * 0.3, abs=1e-12)
+
+
+@given(st.lists(st.tuples(shares, st.floats(0, 1), st.floats(0.01, 5)), max_size=6))
+def test_first_openers_and_none_make_one(rows: list[tuple[float, float, float]]) -> None:
+    """The chances of being first, and that nothing opens, sum to one for any number of devices at any times."""
+    first = first_to_open({str(place): (chance, (begin, begin + span)) for place, (chance, begin, span) in enumerate(rows)})
+    assert min(first.values(), default=0.0) >= 0
+    assert sum(first.values()) == pytest.approx(1 - math.prod(1 - chance for chance, _, _ in rows), abs=1e-6)
+
+
+@pytest.mark.parametrize("device", WATCHING, ids=lambda device: device.id)
+@given(residual_a=st.floats(0, 50))
+def test_opening_times_are_in_order(device, residual_a: float) -> None:
+    """A device opens between two finite times, the later not beyond its law where one is published for this residual."""
+    begin, end = opening_times_s(device, residual_a)
+    assert 0 < begin < end < math.inf
+    assert end <= max(device.break_time_s(max(residual_a * 1e3, device.operating_ma)), 0.3)
+
+
+def test_a_set_delay_moves_the_opening() -> None:
+    """A delay that the case states is waited out before the device may open."""
+    assert opening_times_s(DEVICES["gfpe_100"], 1.0, 0.7)[0] == 0.7
+    assert opening_times_s(DEVICES["gfpe_100"], 1.0)[0] == DEVICES["gfpe_100"].delay_s
+
+
+# --- waveforms and overcurrent --------------------------------------------------------------------------------------
+
+
+def test_what_blinds_a_device() -> None:
+    """Smooth direct current that leaves a 30 mA device working: none for AC, 6 mA for A, 10 mA for F, 12 mA for B (IEC 60755, 62423)."""
+    limits = [smooth_dc_limit_ma(WAVEFORMS[id_], 30.0) for id_ in ("ac", "a", "f", "b")]
+    assert limits == pytest.approx([0, 6, 10, 12])
+    assert smooth_dc_limit_ma(WAVEFORMS["b"], 10.0) == 10
+
+
+@pytest.mark.parametrize("curve", CONVENTIONAL)
+def test_overcurrent_verdicts(curve: str) -> None:
+    """A breaker holds up to its conventional non-tripping current, trips from its tripping current, and at once from its magnetic band."""
+    holds, trips = CONVENTIONAL[curve]
+    low, high = MAGNETIC_BANDS[curve]
+    assert overcurrent_verdict(16, 16 * holds, 16 * holds, curve) == "holds"
+    assert overcurrent_verdict(16, 16 * (holds + trips) / 2, 0, curve) == "may trip"
+    assert overcurrent_verdict(16, 16 * trips, 0, curve) == "trips"
+    assert overcurrent_verdict(16, 5, 16 * low, curve) == "holds"
+    assert overcurrent_verdict(16, 5, 16 * (low + high) / 2, curve) == "may trip"
+    assert overcurrent_verdict(16, 5, 16 * high, curve) == "trips"

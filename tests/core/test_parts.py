@@ -75,7 +75,7 @@ def test_the_rows_themselves_are_good() -> None:
         ("cord", {"length_m": [10, 15, 20]}, "length_m", "a range is [low, high]", [10, 15, 20]),
         ("dock", {"system": "unknown"}, "system", "must be one of split_120_240", "unknown"),
         ("dock", {"system": "three_400"}, "system", "must be one of split_120_240", "three_400"),
-        ("outlet", {"device": "fuse"}, "device", "must be one of none", "fuse"),
+        ("outlet", {"device": "fuse"}, "device", "must be one of class_a", "fuse"),
         ("outlet", {"closed": 1}, "closed", "must be true or false", 1),
         ("outlet", {"connector": "16a_230v"}, "connector", "does not exist on a split_120_240 supply", "16a_230v"),
         ("outlet", {"leg": "L3"}, "leg", "a split_120_240 supply has L1, L2", "L3"),
