@@ -49,6 +49,8 @@ if TYPE_CHECKING:
     from strayline.causes import Fault
 
 MAX_WAYS = 200  # worked out; the rest is counted
+MIN_WAYS = 20  # worked out however large the dock
+MAX_PARTS = 40_000  # in all networks built together: a dock of many boats gets fewer ways
 MAY, MUST_NOT = "may be used", "do not use"
 
 
@@ -61,7 +63,8 @@ def plan(case: Case) -> dict[str, Any]:
     if not own.inlets:
         raise CaseError("installation.parts", "no inlet; a plan needs a boat that can be plugged in")
     marked = frozenset(name for fault in case.faults for name in (fault.at, fault.load) if name)
-    found = hookups(installation, own, MAX_WAYS, marked)
+    most = min(MAX_WAYS, max(MIN_WAYS, MAX_PARTS // len(installation.parts)))
+    found = hookups(installation, own, most, marked)
     ways = [_way(installation, own, hookup, case.faults) for hookup in found.kept]
     used = {link["part"] for way in ways for link in way["connections"]}
     return {

@@ -607,6 +607,17 @@ def test_a_long_list_is_cut_and_says_so(monkeypatch: pytest.MonkeyPatch) -> None
     assert json.dumps(found) == json.dumps(plan(told(rows)))
 
 
+def test_a_dock_of_many_parts_gets_fewer_ways(monkeypatch: pytest.MonkeyPatch) -> None:
+    """The bound falls with the number of parts, never below its least, and what is not worked out is counted."""
+    rows = [*dock(*({"id": f"outlet_{number}", "rated_a": 20 + number} for number in range(9))), cord(), *boat(kettle())]
+    monkeypatch.setattr(planning, "MIN_WAYS", 2)
+    monkeypatch.setattr(planning, "MAX_PARTS", 4 * len(rows))
+    found = plan(told(rows))
+    assert (len(found["ways"]), found["left_out"]) == (4, 5)
+    monkeypatch.setattr(planning, "MAX_PARTS", 1)
+    assert len(plan(told(rows))["ways"]) == 2
+
+
 def test_the_work_grows_with_the_loads_and_not_with_their_combinations() -> None:
     """A load more costs one way no factorization more: each load alone is a closed form on the network with all of them off."""
 
