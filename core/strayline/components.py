@@ -182,6 +182,7 @@ def _wire(length_m: float, area_mm2: float) -> tuple[Parameter, ...]:
         Parameter("length_m", NUMBER, "m", length_m, 0.1, 500.0),
         _AWG,
         Parameter("area_mm2", NUMBER, "mm2", area_mm2, 0.5, 300.0, source="IEC 60228"),
+        Parameter("celsius", NUMBER, "C", 20.0, -40.0, 90.0),
         _LINE,
         _NEUTRAL,
         _GROUND,

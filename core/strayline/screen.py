@@ -354,7 +354,7 @@ def _assumed(session: Session, speech: _Speech) -> list[str]:
     assert session.evidence is not None
     installation = session.evidence.predicted[0].installation
     for key, value, unit in installation.assumed:
-        if key.startswith(("cord.", "feeder.")) and isinstance(value, float | int):
+        if key.startswith(("cord.", "feeder.")) and unit != "C" and isinstance(value, float | int):
             what = key.removesuffix(f"_{unit}").replace("_", " ").replace(".", " ")
             lines.append(speech.say("assumed.default", what=what, value=f"{value:g} {unit}".strip().replace("mm2", "mm²")))
     return [*lines, speech.say("assumed.mistakes", percent=percent(WRONG)), speech.say("assumed.steady")]

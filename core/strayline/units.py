@@ -15,6 +15,12 @@ AWG_SIZES = range(-3, 37)  # 4/0 is -3, 3/0 is -2, 2/0 is -1, 1/0 is 0
 COPPER_OHM_MM2_PER_M = 1 / 58
 COPPER_PER_KELVIN = 0.00393
 
+# IEC 60228 class 5 (flexible, plain): greatest ohms per kilometre at 20 °C. A size in mm² is a name; its resistance is what is laid down.
+FLEXIBLE_OHM_PER_KM: dict[float, float] = {
+    1.5: 13.3, 2.5: 7.98, 4.0: 4.95, 6.0: 3.30, 10.0: 1.91, 16.0: 1.21, 25.0: 0.780, 35.0: 0.554, 50.0: 0.386,
+}  # fmt: skip
+LAY = 1.02  # strands of an American gauge are longer than their cable (ASTM B8: NEC chapter 9 table 8, stranded over solid)
+
 # How each unit may be written behind a number. Milli and mega differ by their letter's case alone, so case is kept.
 SPELLINGS = {
     "mA": ("mA", "ma"),
@@ -85,3 +91,15 @@ def copper_ohms(length_m: float, area_mm2: float, celsius: float = 20) -> float:
     Stranding lay and tinning, which add a few per cent, are not in it.
     """
     return COPPER_OHM_MM2_PER_M * length_m / area_mm2 * (1 + COPPER_PER_KELVIN * (celsius - 20))
+
+
+def cable_ohms(length_m: float, area_mm2: float, celsius: float = 20) -> float:
+    """Resistance in ohms of one conductor of a flexible cable: the greatest that its nominal size allows, else of stranded copper.
+
+    A size that IEC 60228 lists is taken at its greatest resistance; any other area, an American gauge's among them, as copper with the
+    strands' LAY.
+    """
+    listed = FLEXIBLE_OHM_PER_KM.get(area_mm2)
+    if listed is None:
+        return LAY * copper_ohms(length_m, area_mm2, celsius)
+    return listed / 1000 * length_m * (1 + COPPER_PER_KELVIN * (celsius - 20))

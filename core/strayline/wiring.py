@@ -12,7 +12,8 @@ from typing import TYPE_CHECKING
 
 from strayline.components import LINES, SYSTEMS, System
 from strayline.network import Blade, Branch, Coupling, Isolator
-from strayline.units import awg_area_mm2, copper_ohms
+from strayline.phasor import polar
+from strayline.units import awg_area_mm2, cable_ohms
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping, Sequence
@@ -21,11 +22,21 @@ if TYPE_CHECKING:
 
 EARTH = "earth"
 SWITCH_OHMS = 0.002
+OPPOSITE = 180.0  # a second line that the shore does not have is made aboard, opposite to the first
 MAGNETISING, LEAKAGE, COPPER = 0.03, 0.03, 0.01  # of a transformer, as shares of its rating (common practice)
 
 Conductors = dict[str, str]  # conductor name -> node
 
 _KINDS = {"line": "line", "neutral": "neutral", "ground": "protective"}
+
+
+def nominal_volts(across: str, system: System, phase_volts: float) -> float:
+    """Volts RMS across a load where nothing drops: between two lines, or from a line to what the boat calls neutral."""
+    first, second = across.split("-")
+    if second != "N":
+        one, other = (system.lines.get(line, OPPOSITE) for line in (first, second))
+        return phase_volts * abs(polar(1, one) - polar(1, other))
+    return phase_volts if system.neutral else phase_volts * math.sqrt(3.0)  # without a neutral, N is another line
 
 
 def role(conductor: str) -> str:
@@ -63,6 +74,10 @@ class Wiring:
     def phase_volts(self) -> float:
         """Volts RMS from each line to the star point: stated, or those of the system."""
         return self.supply.number("volts") or self.system.volts
+
+    def nominal_volts(self, across: str) -> float:
+        """Volts RMS of this supply across two conductors of the boat, such as "L1-N"."""
+        return nominal_volts(across, self.system, self.phase_volts)
 
     def add(self, branch_id: str, start: str, end: str, ohms: complex, kind: str, owner: str, emf: complex = 0j) -> None:
         """Wire one branch."""
@@ -119,10 +134,10 @@ def lines_in(source: Mapping[str, str]) -> list[str]:
 
 
 def wire_ohms(part: Part) -> dict[str, float]:
-    """Ohms per conductor of a wired part: explicit where given, else from length and gauge (copper at 20 degrees C)."""
+    """Ohms per conductor of a wired part: explicit where given, else from length, gauge and temperature."""
     awg = part.number("awg")
     area = awg_area_mm2(round(awg)) if awg is not None else part.number("area_mm2")
-    ohms = copper_ohms(part.number("length_m") or 0.0, area or 1.0)
+    ohms = cable_ohms(part.number("length_m") or 0.0, area or 1.0, part.number("celsius") or 0.0)
     return {
         "line": part.number("line_ohms") or ohms,
         "neutral": part.number("neutral_ohms") or part.number("line_ohms") or ohms,
