@@ -6,9 +6,8 @@ import itertools
 import math
 from typing import TYPE_CHECKING
 
-from strayline.components import HULL_RADIUS_M, LINES, WATERS, System
+from strayline.components import HULL_RADIUS_M, LINES, WATERS
 from strayline.errors import CaseError
-from strayline.phasor import polar
 from strayline.water import hemisphere_ohms
 from strayline.wiring import EARTH, SWITCH_OHMS, Wiring, short_ohms
 
@@ -16,7 +15,6 @@ if TYPE_CHECKING:
     from strayline.parts import Installation, Part
 
 ELEMENT_TAPS = (0.1, 0.5, 0.9)  # positions along a heating element, as a share of its length from the line end
-OPPOSITE = 180.0  # a second line that the shore does not have is made aboard, opposite to the first
 NEEDS = {"inverter": ("L1", "N")}  # the live conductors that a breaker brings to what is no load
 
 
@@ -69,15 +67,6 @@ def opened_by_breaker(part: Part, installation: Installation) -> frozenset[str]:
     return frozenset(f"{part.id}.{conductor}" for conductor in (fed if part.number("poles") == 2 else fed[:1]))
 
 
-def nominal_volts(across: str, system: System, phase_volts: float) -> float:
-    """Volts RMS across a load where nothing drops: between two lines, or from a line to what the boat calls neutral."""
-    first, second = across.split("-")
-    if second != "N":
-        one, other = (system.lines.get(line, OPPOSITE) for line in (first, second))
-        return phase_volts * abs(polar(1, one) - polar(1, other))
-    return phase_volts if system.neutral else phase_volts * math.sqrt(3.0)  # without a neutral, N is another line
-
-
 def load_ohms(part: Part, volts: float) -> complex:
     """Impedance of a load from ohms, watts or amperes at the nominal voltage across it; an inductive power factor lags."""
     power_factor = part.number("power_factor") or 1.0
@@ -100,7 +89,7 @@ def load(part: Part, wiring: Wiring) -> None:
     for conductor in (first, second):
         if conductor not in source:
             raise CaseError(f"{wiring.installation.paths[part.id]}.across", f"nothing brings {conductor} to it", part.text("across"))
-    volts = nominal_volts(part.text("across"), wiring.system, wiring.phase_volts)
+    volts = wiring.nominal_volts(part.text("across"))
     near, far, frame = f"{part.id}.in", source[second], f"{part.id}.frame"
     wiring.add(f"{part.id}.G", frame, source["G"], part.number("ground_ohms") or SWITCH_OHMS, "protective", part.id)
     both = part.number("switch_poles") == 2

@@ -6,11 +6,11 @@ import cmath
 import math
 from typing import TYPE_CHECKING, Any
 
-from strayline.aboard import nominal_volts
 from strayline.components import CONNECTORS
 from strayline.connections import STRAYS, fed, verdict
 from strayline.loadings import NOTHING
 from strayline.parts import base
+from strayline.wiring import nominal_volts
 
 if TYPE_CHECKING:
     from strayline.connections import Wired

@@ -63,7 +63,7 @@ def stated(installation: Installation) -> dict[str, str]:
     elif sum(part.kind == "inlet" for part in mine) > 1:
         plug = "two_cords"
     else:
-        plug = "one_cord_four_wire" if any(CONNECTORS[part.text("connector")].lines == 2 for part in outlets) else "one_cord"
+        plug = "one_cord_four_wire" if any(CONNECTORS[part.text("connector")].lines > 1 for part in outlets) else "one_cord"
     return {
         "supply": installation.of_kind("supply")[0].text("system"),
         "plug": plug,

@@ -341,7 +341,7 @@ PARENTS: dict[str, tuple[str, ...]] = {
     "adapter": ("receptacle", "cord", "adapter"),
     "cord": ("receptacle", "adapter", "cord"),
     "inlet": ("cord", "adapter"),
-    "isolator": ("inlet", "main", "transformer"),
+    "isolator": ("inlet", "main", "transformer", "cord", "adapter"),
     "transformer": ("inlet", "isolator", "main", "cord", "adapter"),
     "main": _BEFORE_BOAT,
     "generator": (),

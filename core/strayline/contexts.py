@@ -15,9 +15,11 @@ from strayline.components import LINES, SYSTEMS
 from strayline.installation import build
 from strayline.network import Branch, Network, with_branches, without_branches
 from strayline.parts import Installation, Part, base, read
+from strayline.wiring import nominal_volts
 
 AS_FOUND = "as_found"
-DEAD = ("cord_out", "cord_joined", "cord_in_hand")  # nothing is energised: a meter brings the only source
+UNPLUGGED = ("cord_out", "cord_joined")
+DEAD = (*UNPLUGGED, "cord_in_hand")  # nothing is energised: a meter brings the only source
 ENERGISED = (
     AS_FOUND, "pedestal_alone", "cord_alone", "main_off", "branches_off", "one_load", "suspect_out", "test_load", "inverter_settled",
     "without_y", "other_pedestal", "light_load",
@@ -43,7 +45,22 @@ def setting(context: str, installation: Installation) -> Installation | None:
         return _without_y(installation)
     if context == "other_pedestal":
         return _other_pedestal(installation)
+    if context in UNPLUGGED:
+        return _inverters_in("passing", "off", installation)  # switched off before anything is measured, its bond relay falls in
+    if context == "inverter_settled":
+        return _inverters_in("inverting", "passing", installation)
     return installation
+
+
+def _inverters_in(before: str, after: str, installation: Installation) -> Installation:
+    """The same parts, the own inverters that are in one state put into another."""
+    found = [part.id for part in own_parts(installation) if part.kind == "inverter" and part.values["state"] == before]
+    if not found:
+        return installation
+    rows = raw_rows(installation)
+    for inverter in found:
+        rows[inverter]["state"] = after
+    return read({"parts": list(rows.values())})
 
 
 def raw_rows(installation: Installation) -> dict[str, dict[str, object]]:
@@ -62,7 +79,7 @@ def _without_y(installation: Installation) -> Installation | None:
     if not found:
         return None
     for part in found:
-        rows[part.id] |= {"style": "straight_30_50", "from": [part.parents[0]]}
+        rows[part.id] |= {"style": "straight_30_50", "from": [part.parents[0]], "wired": "straight"}
     return read({"parts": list(rows.values())})
 
 
@@ -140,7 +157,9 @@ def running_below(installation: Installation, breaker: Part, running: set[str]) 
 def _with_test_load(network: Network, installation: Installation, mine: tuple[Part, ...]) -> Network:
     """One plain resistive load, line to neutral, on the panel's first line."""
     panel = next(part.id for part in mine if part.kind == "panel")
-    volts = SYSTEMS[installation.of_kind("supply")[0].text("system")].volts
+    supply = installation.of_kind("supply")[0]
+    system = SYSTEMS[supply.text("system")]
+    volts = nominal_volts("L1-N", system, supply.number("volts") or system.volts)
     return with_branches(
         network, Branch("test_load", f"{panel}.L1", f"{panel}.N", complex(volts**2 / TEST_LOAD_WATTS), "load", "test_load")
     )
@@ -177,12 +196,13 @@ def worst_for_blades(installation: Installation) -> Installation:
     """The same parts in the state against which bare blades are judged: all closed aboard, and of the loads those across two lines on.
 
     A switch that is off now is on a minute later, with the same plug out. A load from line to neutral only pulls a loose blade down
-    towards neutral, so it counts as off.
+    towards neutral, so it counts as off; where the supply has no neutral it pulls towards another line, and counts as on.
     """
     rows = raw_rows(installation)
+    neutral = SYSTEMS[installation.of_kind("supply")[0].text("system")].neutral
     for row in rows.values():
         if row["kind"] == "load":
-            row["on"] = "N" not in str(row["across"])
+            row["on"] = not (neutral and str(row["across"]).endswith("N"))
         if row["kind"] in ("breaker", "main"):
             row["closed"] = True
     return read({"parts": list(rows.values())})

@@ -42,21 +42,20 @@ def transformer(part: Part, wiring: Wiring) -> None:
 
     A one-line source feeds line to neutral and gives one line, or with a split secondary two of the same voltage; a two-line source feeds
     line to line and gives a split secondary of half its voltage each. The secondary's neutral is tied to the boat's ground where bonded.
+    Three lines are refused.
     """
     source = wiring.ends[part.parents[0]]
-    lines = lines_in(source)
-    wide = len(lines) > 1
-    far = source[lines[1]] if wide else source["N"]
-    volts = wiring.phase_volts
-    if wide:
-        angles = [wiring.system.lines[line] for line in lines[:2]]
-        volts *= abs(polar(1, angles[0]) - polar(1, angles[1]))
+    wide = "L2" in source
+    if "L3" in source:
+        raise CaseError(f"{wiring.installation.paths[part.id]}.from", "a transformer takes one line or two, not three", part.parents[0])
+    far = "L2" if wide else "N"
+    volts = wiring.nominal_volts(f"L1-{far}")
     ends: Conductors = {conductor: f"{part.id}.{conductor}" for conductor in ("L1", "N", "G")}
     halves = [("secondary", ends["L1"], ends["N"], 0.5 if wide else 1.0)]
     if wide or part.text("secondary") == "split":
         ends = {"L1": ends["L1"], "L2": f"{part.id}.L2", "N": ends["N"], "G": ends["G"]}
         halves.append(("secondary2", ends["N"], ends["L2"], halves[0][3]))
-    wiring.transformer(part, ("primary", source["L1"], far), halves, volts / (part.number("rated_a") or 1.0))
+    wiring.transformer(part, ("primary", source["L1"], source[far]), halves, volts / (part.number("rated_a") or 1.0))
     nanofarads = part.number("winding_nf") or 1.0
     if part.flag("shield"):
         wiring.capacitor(f"{part.id}.shield", source["L1"], source["G"], nanofarads, part.id)
@@ -72,7 +71,7 @@ def transformer(part: Part, wiring: Wiring) -> None:
 def generator(part: Part, wiring: Wiring) -> None:
     """A generator aboard: running or still, its neutral, its bond to the frame and the frame's ground are there."""
     star, frame = f"{part.id}.star", f"{part.id}.frame"
-    volts = part.number("volts") or wiring.phase_volts
+    volts = part.number("volts") or wiring.nominal_volts("L1-N")
     ends: Conductors = {}
     for line, degrees in (("L1", 0.0), ("L2", 180.0))[: int(part.number("lines") or 1)]:
         ends[line] = f"{part.id}.{line}"
@@ -110,9 +109,6 @@ def inverter(part: Part, wiring: Wiring) -> None:
     Where the neutral is common, input and output share it in every state.
     """
     source = wiring.ends[part.parents[0]]
-    for conductor in ("L1", "N"):
-        if conductor not in source:
-            raise CaseError(f"{wiring.installation.paths[part.id]}.from", f"nothing brings {conductor} to it", part.parents[0])
     state, ohms = part.text("state"), short_ohms(part)
     passing = state in ("passing", "welded")
     wiring.through(part, source, ohms, ["L1", "N", "G"])
@@ -120,6 +116,6 @@ def inverter(part: Part, wiring: Wiring) -> None:
         wiring.open([f"{part.id}.L1"] + ([] if part.flag("common_neutral") else [f"{part.id}.N"]))
     ends = wiring.ends[part.id]
     if state == "inverting":
-        wiring.add(f"{part.id}.source", ends["N"], ends["L1"], INVERTER_OHMS, "source", part.id, polar(wiring.phase_volts, 0.0))
+        wiring.add(f"{part.id}.source", ends["N"], ends["L1"], INVERTER_OHMS, "source", part.id, polar(wiring.nominal_volts("L1-N"), 0.0))
     if state != "passing":
         wiring.add(f"{part.id}.bond", ends["N"], ends["G"], part.number("bond_ohms") or FRAME_BOND_OHMS, "bond", part.id)

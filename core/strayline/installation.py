@@ -44,16 +44,17 @@ def build(installation: Installation) -> Network:
     wiring = Wiring(installation)
     for part in installation.parts:
         _BUILDERS[part.kind](part, wiring)
-    present = {branch.id for branch in wiring.branches}
+    branches = wiring.closed()
+    present = {branch.id for branch in branches}
     nodes: dict[str, set[str]] = {}  # part id -> its nodes
-    for branch in wiring.branches:
+    for branch in branches:
         for node in (branch.from_node, branch.to_node):
             nodes.setdefault(base(node), set()).add(node)
     watched = [part for part in installation.of_kind(*WATCHED) if part.kind != "breaker" or part.values["device"] != "none"]
     network = Network(
         wiring.system.hertz,
         EARTH,
-        tuple(wiring.branches),
+        branches,
         tuple(_sensor(part, installation, present, nodes) for part in watched),
         tuple(wiring.blades),
         tuple((part.id, f"{part.id}.metal") for part in installation.of_kind("hull")),

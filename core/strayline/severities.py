@@ -257,12 +257,17 @@ def _forced_plug(boat: _Boat, cause: str) -> list[Fault]:
 
 
 def _reversed_polarity(boat: _Boat, cause: str) -> list[Fault]:
+    if not boat.system.neutral:
+        return []  # both poles are lines: neither is the wrong one
     return [Fault(cause, at=part.id) for part in (*boat.plugged[:1], *boat.exchangeable[:1])]
 
 
 def _reversed_with(*milliamperes: float, hard: tuple[float, ...] = ()) -> Callable[[_Boat, str], list[Fault]]:
     return lambda boat, cause: [
-        Fault(cause, at=part.id, ohms=ohms) for part in boat.plugged[:1] for ohms in (*boat.at_ma(*milliamperes), *hard)
+        Fault(cause, at=part.id, ohms=ohms)
+        for part in boat.plugged[:1]
+        for ohms in (*boat.at_ma(*milliamperes), *hard)
+        if boat.system.neutral
     ]
 
 

@@ -59,11 +59,12 @@ class Wiring:
     blades: list[Blade] = field(default_factory=list)
     couplings: list[Coupling] = field(default_factory=list)
     isolators: list[Isolator] = field(default_factory=list)
+    opened: set[str] = field(default_factory=set)
 
     @property
     def supply(self) -> Part:
         """The one supply."""
-        return self.installation.of_kind("supply")[0]
+        return next(part for part in self.installation.parts if part.kind == "supply")  # the first or close to it
 
     @property
     def system(self) -> System:
@@ -89,8 +90,11 @@ class Wiring:
 
     def open(self, branch_ids: Iterable[str]) -> None:
         """Leave out what a switch opens."""
-        gone = frozenset(branch_ids)
-        self.branches = [branch for branch in self.branches if branch.id not in gone]
+        self.opened.update(branch_ids)
+
+    def closed(self) -> tuple[Branch, ...]:
+        """The branches that no switch leaves out."""
+        return tuple(branch for branch in self.branches if branch.id not in self.opened)
 
     def through(self, part: Part, source: Conductors, ohms: Mapping[str, float], conductors: Iterable[str] | None = None) -> None:
         """One branch per conductor, from the load end of the part before to this part's own load end."""

@@ -89,6 +89,13 @@ def test_a_split_secondary_gives_two_lines() -> None:
         assert abs(solved(rows).current("stove.load")) == pytest.approx(6, rel=0.05)
 
 
+def test_three_lines_into_a_transformer() -> None:
+    """A transformer drawn on three lines is refused by name."""
+    rows = [*dock("three_230_400", "16a_400v"), WINDING, *boat("outlet1", HEATER, main="winding")]
+    with pytest.raises(CaseError, match="a transformer takes one line or two, not three"):
+        build(read({"parts": rows}))
+
+
 # --- generators, inverters, isolators ------------------------------------------------------------------------------
 
 
@@ -124,6 +131,18 @@ def test_states_of_an_inverter(state: str, common: bool, amperes: bool) -> None:
     assert (residual(rows) > 1) == amperes
     fed = abs(solved(rows).current("oven.load"))
     assert fed == pytest.approx(0 if state == "off" else 5, abs=0.2)
+
+
+@pytest.mark.parametrize("system", ["it_230", "single_230"])
+def test_what_makes_power_aboard_makes_the_boats_voltage(system: str) -> None:
+    """Inverter, generator and transformer give the boat 230 V across its poles, on a supply whose poles are two lines too."""
+    shore, heater = dock(system, "16a_230v"), load("heater", ohms=46)
+    unit = UNIT | {"state": "inverting", "common_neutral": False}
+    assert abs(solved([*shore, *boat("outlet1", unit, heater | {"from": "unit"})]).current("heater.load")) == pytest.approx(5, rel=0.03)
+    running = [*shore, GENSET | {"running": True}, SWITCH | {"position": 2}, *boat("outlet1", heater, panel="switch")]
+    assert abs(solved(running).current("heater.load")) == pytest.approx(5, rel=0.03)
+    behind = [*shore, WINDING, *boat("outlet1", heater, main="winding")]
+    assert abs(solved(behind).current("heater.load")) == pytest.approx(5, rel=0.03)
 
 
 def test_an_isolator_hides_a_bond_at_light_load_only() -> None:
@@ -218,3 +237,18 @@ def test_a_transfer_switch_has_two_sources() -> None:
     rows = [row | ({"from": ["main"]} if row["id"] == "switch" else {}) for row in on_shore()]
     with pytest.raises(CaseError, match="a transfer switch has two sources"):
         read({"parts": rows})
+
+
+@pytest.mark.parametrize(
+    ("aboard", "missing"),
+    [
+        ([UNIT, load("stove", across="L1-L2", ohms=40) | {"from": "unit"}], "L2"),
+        ([load("stove", across="L1-L2", ohms=40)], "L2"),
+    ],
+)
+def test_a_load_without_its_conductors(aboard: list[Row], missing: str) -> None:
+    """A load across two lines where only one is brought is refused by name and value."""
+    with pytest.raises(CaseError, match=f"nothing brings {missing} to it") as caught:
+        build(read({"parts": [*USUAL, *boat("outlet1", *aboard)]}))
+    assert caught.value.where.endswith(".across")
+    assert caught.value.value == "L1-L2"

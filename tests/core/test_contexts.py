@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 import pytest
 
+from drawn import boat, dock
 from strayline import arrangements, contexts
 from strayline.arrangements import Arrangement
 from strayline.boat import own_parts
@@ -138,6 +139,12 @@ def test_test_load() -> None:
     assert abs(solution.current("test_load")) == pytest.approx(10, rel=0.1)
 
 
+def test_the_test_load_takes_its_power_between_two_lines_too() -> None:
+    """Where the boat's second pole is another line the test load is made for 230 V."""
+    installation = read({"parts": [*dock("it_230", "16a_230v"), *boat("outlet1")]})
+    assert abs(solve(state("test_load", installation)[1]).current("test_load")) == pytest.approx(1200 / 230, rel=0.03)
+
+
 def test_without_the_y_the_whole_y_is_out() -> None:
     """Without the Y one outlet feeds the boat through a straight adapter, the other feeds nothing, and no blade is left bare."""
     installation = typical("combining_y")
@@ -206,6 +213,25 @@ def test_neutral_to_ground_with_the_cord_out(ohms: float) -> None:
     assert reading("cord_out", Fault("nothing_now")) == INFINITE_OHMS
 
 
+@pytest.mark.parametrize(("common", "seen"), [(True, True), (False, False)])
+def test_an_inverters_bond_with_the_cord_out(common: bool, seen: bool) -> None:
+    """Without shore power a drawn inverter's relay falls in: with a common neutral its bond is what the meter reads at the panel."""
+    unit = {"id": "unit", "kind": "inverter", "from": "panel", "common_neutral": common, "bond_ohms": 0.3}
+    installation = read({"parts": [*_rows("one_cord"), unit]})
+    found = Predictions(installation, (Point("nothing_now", Fault("nothing_now"), (), 1.0),)).outlooks("cord_out")
+    assert found is not None
+    assert (found[1][0].readings["meter_ohm"] == pytest.approx(0.3, rel=0.1)) == seen
+    assert found[1][0].readings["meter_ohm"] in (pytest.approx(0.3, rel=0.1), INFINITE_OHMS)
+
+
+def test_an_inverter_settles() -> None:
+    """In the window after plug-in its bond sends amperes over the ground; once it has settled, less than a milliampere."""
+    unit = {"id": "unit", "kind": "inverter", "from": "panel", "state": "inverting"}
+    installation = read({"parts": [*_rows("one_cord"), unit]})
+    assert abs(solve(build(installation)).residual("outlet")) > 1
+    assert abs(solve(state("inverter_settled", installation)[1]).residual("outlet")) < 1e-3
+
+
 def test_insulation_with_the_lives_joined() -> None:
     """With the live conductors joined the meter reads a leak anywhere along an element as its own ohms."""
     for position in (0.0, 0.5, 1.0):
@@ -259,6 +285,30 @@ def test_one_cord_of_joined_inlets_is_a_live_plug() -> None:
     rows = [row | ({"from": "panel"} if row.get("from") == "panel2" else {}) for row in rows]
     rows = [row | ({"across": "L1-L2"} if row["id"] == "cooling" else {}) for row in rows]
     assert blade_volts("as_found", read({"parts": rows})) == pytest.approx(120, rel=0.05)
+
+
+@pytest.mark.parametrize(("system", "live"), [("single_230", False), ("it_230", True)])
+def test_a_second_pole_that_is_a_line_is_live(system: str, live: bool) -> None:
+    """One of two cords out, on one panel: its plug is near ground where the common pole is a neutral, and live where it is a line."""
+    rows = [
+        row
+        for row in _rows(
+            "two_cords", dock={"system": system}, cord2={"from": ""}, panel={"from": ["main", "main2"]}, hull={"from": ["panel"]}
+        )
+        if row["id"] not in ("panel2", "spare")
+    ]
+    rows = [row | ({"from": "panel"} if row.get("from") == "panel2" else {}) for row in rows]
+    rows = [row | ({"connector": "16a_230v", "leg": "L1"} if row["kind"] == "receptacle" else {}) for row in rows]
+    rows = [row | ({"across": "L2-N"} if row["id"] == "cooling" else {}) for row in rows]
+    assert (blade_volts("as_found", read({"parts": rows})) > 100) == live
+
+
+def test_a_home_made_y_goes_out_with_its_wiring() -> None:
+    """The straight adapter in a home-made Y's place is wired straight: what was exchanged in the Y is gone with it."""
+    rows = _rows("combining_y", adapter={"style": "homemade", "wired": "neutral_ground"})
+    installation = read({"parts": rows})
+    assert abs(solve(build(installation)).residual("outlet")) > 1
+    assert abs(solve(state("without_y", installation)[1]).residual("outlet")) < 0.006
 
 
 def test_states_that_cut_the_boat_off_leave_no_live_blade() -> None:

@@ -12,8 +12,10 @@ import pytest
 from drawn import Row, boat, dock, load
 from strayline.causes import Fault, applied
 from strayline.components import SYSTEMS
+from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.parts import read
+from strayline.severities import severities
 from strayline.solve import Solution, solve
 
 
@@ -40,6 +42,14 @@ def test_without_a_neutral_both_poles_stand_away_from_ground(system: str) -> Non
     assert abs(line - ground) == pytest.approx(230 / math.sqrt(3), rel=0.03)
     assert abs(other - ground) == pytest.approx(230 / math.sqrt(3), rel=0.03)
     assert abs(line - other) == pytest.approx(230, rel=0.03)
+
+
+@pytest.mark.parametrize(("system", "claimed"), [("it_230", False), ("no_neutral_230", False), ("single_230", True)])
+def test_without_a_neutral_no_polarity_is_the_wrong_one(system: str, claimed: bool) -> None:
+    """Both poles are lines there, so nothing is reversed: causes of reversed polarity stay out."""
+    installation = read({"parts": [*dock(system, "16a_230v"), *boat("outlet1", HEATER)]})
+    for cause in ("reversed_polarity", "reversed_with_soft_neutral", "reversed_with_bond"):
+        assert bool(severities(cause, installation)) == claimed
 
 
 def test_a_leak_on_it_is_fed_through_the_capacitance_of_the_network() -> None:
@@ -116,3 +126,10 @@ def test_every_supply_gives_its_volts(system: str) -> None:
     volts = abs((solution.voltage("panel.L1") or 0j) - (solution.voltage("panel.N") or 0j))
     assert volts == pytest.approx({"60": facts.volts, "50": 230.0}[facts.region], rel=0.005)
     assert abs(solution.current("lamp.load")) == pytest.approx(40 / volts, rel=0.01)
+
+
+def test_a_load_on_a_post_without_a_neutral() -> None:
+    """A load ashore that asks for a neutral which the supply does not have is refused by name."""
+    rows = [*dock("it_230", "16a_230v"), load("lamp", watts=80) | {"from": "post"}]
+    with pytest.raises(CaseError, match="nothing brings N to it"):
+        build(read({"parts": rows}))
