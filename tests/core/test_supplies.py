@@ -68,6 +68,19 @@ def test_a_bond_is_loud_on_tn_and_quiet_on_tt(earthing: str, low: float, high: f
     assert low < abs(solved(rows, BOND).residual("outlet1")) < high
 
 
+@pytest.mark.parametrize(("watts", "milliamperes"), [(90, 13), (600, 84)])
+def test_on_tt_a_bond_drives_the_neutrals_drop_through_two_electrodes(watts: float, milliamperes: float) -> None:
+    """I R_N / (R_N + R_A + R_B): 0.33 ohm of neutral beside electrodes of 5 and 5 ohm is 13 mA at 90 W and 84 mA at 600 W (by hand)."""
+    rows = dock("single_230", "16a_230v", earthing="tt", neutral_ohms=1e-6, earth_ohms=5, source_earth_ohms=5)
+    rows[1] |= {"line_ohms": 1e-6, "ground_ohms": 1e-6}
+    parts = boat("outlet1", load("heater", watts=watts))
+    parts[0] |= {"line_ohms": 0.33, "neutral_ohms": 0.32, "ground_ohms": 1e-3}  # with 10 milliohm of contacts: 0.33 ohm
+    parts[-1] |= {"afloat": False}
+    shown = abs(solved([*rows, *parts], BOND).residual("outlet1"))
+    assert shown == pytest.approx(watts / 230 * 0.33 / (0.33 + 5 + 5), rel=0.03)
+    assert shown == pytest.approx(milliamperes * 1e-3, rel=0.06)
+
+
 def test_the_bond_divides_the_return_by_the_conductors() -> None:
     """The residual is I Z_N / (Z_N + Z_G): half the load's current where neutral and ground of the cord are alike and all else is short."""
     rows = dock("single_230", "16a_230v", earthing="tn_s", neutral_ohms=1e-6, bond_ohms=1e-6)
