@@ -10,7 +10,7 @@ import math
 from dataclasses import dataclass
 
 from strayline.appliances import APPLIANCES
-from strayline.devices import DEVICES, WAVEFORMS
+from strayline.devices import CURVES, DEVICES, WAVEFORMS
 
 NUMBER, CHOICE, FLAG, REFERENCE, REFERENCES = "number", "choice", "flag", "reference", "references"
 REQUIRED = object()
@@ -150,7 +150,6 @@ ADAPTERS: dict[str, Adapter] = {
 WIRED = ("straight", "line_neutral", "neutral_ground", "line_ground", "ground_open")
 
 ACROSS = ("L1-N", "L2-N", "L3-N", "L1-L2", "L2-L3", "L1-L3")
-CURVES = ("b", "c", "d", "na")  # IEC 60898-1 magnetic releases; "na" has no letter
 
 # Water: ohm metres, middle of what is met (sea water 0.2 to 0.33, brackish 0.5 to 10, fresh 10 to 200).
 WATERS: dict[str, float] = {"fresh": 50.0, "brackish": 3.0, "salt": 0.25}
@@ -166,7 +165,7 @@ _NEUTRAL = Parameter("neutral_ohms", NUMBER, "ohm", None, 1e-9, 1e3)
 _GROUND = Parameter("ground_ohms", NUMBER, "ohm", None, 1e-9, 1e6)
 _CONNECTOR = Parameter("connector", CHOICE, "", None, choices=tuple(CONNECTORS))
 _RATED = Parameter("rated_a", NUMBER, "A", None, 1.0, 400.0)
-_CURVE = Parameter("curve", CHOICE, "", None, choices=CURVES)
+_CURVE = Parameter("curve", CHOICE, "", None, choices=tuple(CURVES), source="IEC 60898-1; \"na\": North American, without a letter")
 _WAVEFORM = Parameter("waveform", CHOICE, "", None, choices=tuple(WAVEFORMS), source="IEC 60755, IEC 62423")
 _DELAY = Parameter("delay_s", NUMBER, "s", None, 0.0, 5.0)
 _NON_OPERATING = Parameter("non_operating_ma", NUMBER, "mA", None, 0.1, 1e5)

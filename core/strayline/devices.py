@@ -23,18 +23,6 @@ WINDOW_OHM = (0.5, 8.0)  # loop ohms: nearly every / nearly no grounded-neutral 
 UNPUBLISHED_S = 0.2  # longest time of a device that publishes none, and of a Class A device, whose law is a ceiling; common practice
 QUICKEST = 0.1  # share of its longest time in which an instantaneous device may open already; common practice
 DELAY_SPREAD_S = 0.1  # by how much a set delay is overrun; common practice
-CONVENTIONAL: dict[str, tuple[float, float]] = {  # holds / trips after long, multiples of the rating
-    "b": (1.13, 1.45), "c": (1.13, 1.45), "d": (1.13, 1.45),  # IEC 60898-1
-    "na": (1.0, 1.35),  # UL 489 (from memory)
-}  # fmt: skip
-THERMAL_BAND = (1.13, 1.35)  # multiples of the rating after a long time: IEC 60898-1 holds, UL 489 trips (up to 50 A)
-# IEC 60898-1; North American breakers publish no band, "na" is common practice
-MAGNETIC_BANDS: dict[str, tuple[float, float]] = {
-    "b": (3.0, 5.0),
-    "c": (5.0, 10.0),
-    "d": (10.0, 20.0),
-    "na": (5.0, 10.0),
-}
 
 PATTERNS: tuple[str, ...] = ("none", "pedestal", "aboard", "both", "feeder")
 
@@ -149,6 +137,9 @@ WAVEFORMS: dict[str, Waveform] = {
 }
 
 
+USUAL_WAVEFORM = "a"  # where nobody says; North American devices have no letter and are taken as such (common practice)
+
+
 def smooth_dc_limit_ma(waveform: Waveform, rated_ma: float) -> float:
     """Smooth direct current in mA that leaves a device of this type and rating working."""
     least, share = waveform.smooth_dc
@@ -217,26 +208,68 @@ def trip_probability(
     return _soft(1.0 - held)
 
 
-def overcurrent_probability(rated_a: float, current_a: float, minutes: float) -> float:
+@dataclass(frozen=True, slots=True)
+class Curve:
+    """How a thermal-magnetic breaker opens, in multiples of its rating.
+
+    thermal -- it carries the first for an hour or more, and opens within an hour at the second
+    quick   -- it opens at this multiple from cold within `minutes`: the first up to `large_a` amperes of rating, the second above
+    at_once -- its magnetic release holds at the first and opens at the second
+    """
+
+    id: str
+    thermal: tuple[float, float]
+    quick: float
+    large_a: float
+    minutes: tuple[float, float]
+    at_once: tuple[float, float]
+    source: str
+
+
+def _lettered(id_: str, at_once: tuple[float, float]) -> Curve:
+    return Curve(id_, (1.13, 1.45), 2.55, 32.0, (1.0, 2.0), at_once, "IEC 60898-1 (1 and 2 minutes at 2.55 from memory)")
+
+
+_CURVES: tuple[Curve, ...] = (
+    _lettered("b", (3.0, 5.0)),
+    _lettered("c", (5.0, 10.0)),
+    _lettered("d", (10.0, 20.0)),
+    Curve("na", (1.0, 1.35), 2.0, 30.0, (2.0, 4.0), (5.0, 10.0), "UL 489 (from memory); it gives no magnetic band: common practice"),
+)  # fmt: skip
+
+CURVES: dict[str, Curve] = {curve.id: curve for curve in _CURVES}
+
+
+def usual_curve(hertz: float) -> str:
+    """The curve of a breaker where nobody says: North American breakers have no letter, others are mostly C (common practice)."""
+    return "na" if hertz == 60.0 else "c"
+
+
+def overcurrent_probability(rated_a: float, current_a: float, minutes: float, curve: str) -> float:
     """Probability that a thermal breaker rated `rated_a` opens within `minutes` of a steady `current_a` (both A RMS).
 
     A strip warming towards the square of the current, from cold: it opens when (I/In)^2 (1 - exp(-t/tau)) passes the square
-    of a threshold spread over THERMAL_BAND. tau is chosen so that twice the rating opens nearly all within UL 489's limit
-    (2 minutes up to 30 A, 4 minutes above; from memory). Real breakers open sooner at high currents. Source: IEC 60898-1
-    (holds an hour at 1.13, opens within it at 1.45), UL 489 (opens within an hour at 1.35).
+    of a threshold spread over the curve's thermal band. tau is chosen so that at the quick multiple nearly all open within its
+    minutes. Real breakers open sooner at high currents.
     """
-    limit_minutes = 2.0 if rated_a <= 30.0 else 4.0
-    tau = limit_minutes / -math.log1p(-((THERMAL_BAND[1] / 2.0) ** 2))
+    row = CURVES[curve]
+    limit_minutes = row.minutes[rated_a > row.large_a]
+    tau = limit_minutes / -math.log1p(-((row.thermal[1] / row.quick) ** 2))
     warmth = -math.expm1(-max(minutes, 0.0) / tau)
-    return _soft(_share_passed(current_a / rated_a * math.sqrt(warmth), *THERMAL_BAND))
+    return _soft(_share_passed(current_a / rated_a * math.sqrt(warmth), *row.thermal))
 
 
-def inrush_probability(rated_a: float, inrush_a: float, curve: str = "c") -> float:
-    """Probability that the magnetic release of a breaker opens at once on an inrush (A RMS of the worst cycle).
+def inrush_probability(rated_a: float, inrush_a: float, curve: str) -> float:
+    """Probability that the magnetic release of a breaker opens at once on an inrush (A RMS of the worst cycle)."""
+    return _soft(_share_passed(inrush_a / rated_a, *CURVES[curve].at_once))
 
-    `curve` is a key of MAGNETIC_BANDS. North American breakers publish no letter; "c" is common practice for them.
-    """
-    return _soft(_share_passed(inrush_a / rated_a, *MAGNETIC_BANDS[curve]))
+
+def overcurrent_verdict(rated_a: float, line_a: float, inrush_a: float, curve: str) -> str:
+    """What a thermal-magnetic breaker does after long with `line_a`, or at a start with `inrush_a` (A RMS): holds, may trip, trips."""
+    row = CURVES[curve]
+    if line_a >= row.thermal[1] * rated_a or inrush_a >= row.at_once[1] * rated_a:
+        return "trips"
+    return "holds" if line_a <= row.thermal[0] * rated_a and inrush_a <= row.at_once[0] * rated_a else "may trip"
 
 
 FEEDER_FIRST = 0.30  # a feeder device among those that would trip opens first; common practice
@@ -297,15 +330,6 @@ def opening_times_s(device: Device, residual_a: float, delay_s: float | None = N
     set_s = device.delay_s if delay_s is None else delay_s
     longest = min(device.break_time_s(ma), UNPUBLISHED_S)
     return (set_s, set_s + DELAY_SPREAD_S) if set_s else (QUICKEST * longest, longest)
-
-
-def overcurrent_verdict(rated_a: float, line_a: float, inrush_a: float, curve: str) -> str:
-    """What a thermal-magnetic breaker does after long with `line_a`, or at a start with `inrush_a` (A RMS): holds, may trip, trips."""
-    holds, trips = CONVENTIONAL[curve]
-    at_once = MAGNETIC_BANDS[curve]
-    if line_a >= trips * rated_a or inrush_a >= at_once[1] * rated_a:
-        return "trips"
-    return "holds" if line_a <= holds * rated_a and inrush_a <= at_once[0] * rated_a else "may trip"
 
 
 STEPS_BETWEEN = 24  # of Simpson's rule between two moments at which a device begins or ceases to open

@@ -16,13 +16,14 @@ from strayline import contexts, devices
 from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.questions import QUESTION
 from strayline.catalogue.tests import STATED, TEST, Test
-from strayline.openings import DEAD, WORKS, DeviceState, any_opens, device_states, role_chances
+from strayline.openings import DEAD, WORKS, DeviceState, acts_on_devices, any_opens, delayed_roles, device_states, role_chances
 from strayline.posterior import Hypotheses, hypotheses_of
 from strayline.predict import Outlook, Point, Predictions, cause_weights
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
 
+    from strayline.faults import Fault
     from strayline.openings import RoleChances
     from strayline.predict import Watch
 
@@ -116,12 +117,14 @@ class Evidence:
     def _opened(
         self, where: int, context: str, watched: tuple[Watch, ...], outlooks: Sequence[Outlook]
     ) -> list[tuple[float, float, float]]:
-        seen: dict[tuple[int, bool], RoleChances] = {}
+        seen: dict[tuple[int, Fault | None], RoleChances] = {}
+        points = self.predicted[where].points
+        away = {point.latents: outlook for outlook, point in zip(outlooks, points, strict=True) if point.cause == "nothing_now"}
         rows = []
-        for outlook, point in zip(outlooks, self.predicted[where].points, strict=True):
-            mark = (id(outlook), point.cause == "touchy_device")
-            if mark[1] or mark not in seen:
-                seen[mark] = role_chances(watched, outlook, point, context)
+        for outlook, point in zip(outlooks, points, strict=True):
+            mark = (id(outlook), point.fault if acts_on_devices(point.fault) else None)
+            if mark not in seen:
+                seen[mark] = role_chances(watched, outlook, point.fault, context, away.get(point.latents))
             feeder, pedestal, aboard = seen[mark]
             rows += [(feeder[WORKS], pedestal[state.pedestal], aboard[state.aboard]) for state in self.states[where]]
         return rows
@@ -313,11 +316,14 @@ def _opened(found: Evidence) -> dict[str, tuple[float, ...]] | None:
         return None
     stated = {"pedestal": 0.6, "aboard": 0.2, "both": 0.1, "feeder": 0.1}
     columns: dict[str, list[float]] = {choice: [] for choice in QUESTION["opened"].choices}
-    memo: dict[tuple[float, float, float], dict[str, float]] = {}
+    made = [one.outlooks(contexts.AS_FOUND) for one in found.predicted]
+    delayed = [delayed_roles(outlooks[0] if outlooks else ()) for outlooks in made]
+    memo: dict[tuple[frozenset[str], tuple[float, float, float]], dict[str, float]] = {}
     for index, row in enumerate(rows):
-        if row not in memo:
-            memo[row] = devices.opening_patterns({"feeder": row[0], "pedestal": row[1], "aboard": row[2]}, delayed=("feeder",))
-        patterns = memo[row]
+        mark = (delayed[found.members[index][0]], row)
+        if mark not in memo:
+            memo[mark] = devices.opening_patterns({"feeder": row[0], "pedestal": row[1], "aboard": row[2]}, mark[0])
+        patterns = memo[mark]
         happened = 1 - patterns["none"] + UNEXPLAINED
         transient = found.point(index).cause == "nothing_now"
         for choice, column in columns.items():

@@ -5,13 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from strayline import devices
+from strayline import contexts, devices
+from strayline.faults import Fault
 from strayline.predict import ROLES
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
 
-    from strayline.predict import Outlook, Point, Watch
+    from strayline.predict import Outlook, Watch
 
 DEAD_SHARE = 0.03  # devices that no longer open
 MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1
@@ -27,6 +28,33 @@ class DeviceState:
     pedestal: int
     aboard: int
     share: float
+
+
+NOTHING = Fault("nothing_now")
+ONLY_IN = {"surge": (contexts.AS_FOUND,)}  # nobody tests in a thunderstorm: causes that open a device by themselves in these states only
+
+
+def acts_on_devices(fault: Fault) -> bool:
+    """Whether a fault changes what the devices do with what they see, beyond what it does to the circuit."""
+    return fault.scale != 1.0 or fault.spontaneous > 0.0 or fault.duty < 1.0
+
+
+def band_scale(fault: Fault, device_id: str, seen: bool, waveform: str) -> float:
+    """By what a fault multiplies the operating band of one device; `seen` tells whether the device watches the place of the fault.
+
+    A touchy device's own band is lower. What a device's type does not cope with lowers its band for mixed frequencies (it trips early)
+    and raises it for smooth direct current (it is blinded).
+    """
+    if fault.cause == "touchy_device":
+        return fault.scale if fault.at == device_id else 1.0
+    type_ = devices.WAVEFORMS[waveform]
+    copes = {"drive_leakage": type_.mixed, "rectified_leakage": type_.smooth_dc[1] > 0.0}
+    return fault.scale if seen and not copes.get(fault.cause, True) else 1.0
+
+
+def delayed_roles(watched: Sequence[Watch]) -> frozenset[str]:
+    """The roles in which every device waits on purpose."""
+    return frozenset(watch.role for watch in watched) - {watch.role for watch in watched if not watch.waits}
 
 
 ABSENT = {"pedestal": 0.15, "aboard": 0.5}  # share of docks and boats without a device where nobody says
@@ -54,26 +82,62 @@ def device_states(watched: Sequence[Watch], facts: Mapping[str, str]) -> tuple[D
 RoleChances = tuple[tuple[float, float, float], tuple[float, float, float], tuple[float, float, float]]
 
 
-def role_chances(watched: tuple[Watch, ...], outlook: Outlook, point: Point, context: str) -> RoleChances:
-    """What feeder, pedestal and aboard devices do with one outlook, each dead, plain and detecting."""
-    minutes = MINUTES_HELD.get(context.partition(":")[0], 1.0)
+def role_chances(watched: tuple[Watch, ...], outlook: Outlook, fault: Fault, context: str, away: Outlook | None = None) -> RoleChances:
+    """What feeder, pedestal and aboard devices do with one outlook, each dead, plain and detecting.
+
+    `away` is what would be seen while a fault that comes and goes is not there; the two are mixed by its `duty`.
+    """
+    there = _chances(watched, outlook, fault, context)
+    if away is None or fault.duty == 1.0:
+        return there
+    gone = _chances(watched, away, NOTHING, context)
+    mixed = (
+        tuple(fault.duty * with_it + (1 - fault.duty) * without for with_it, without in zip(one, other, strict=True))
+        for one, other in zip(there, gone, strict=True)
+    )
+    return tuple(mixed)  # type: ignore[return-value]
+
+
+def _chances(watched: tuple[Watch, ...], outlook: Outlook, fault: Fault, context: str) -> RoleChances:
+    state, _, alone = context.partition(":")
+    minutes = MINUTES_HELD.get(state, 1.0)
     held = {role: [1.0, 1.0, 1.0] for role in ROLES}
+    acting = acts_on_devices(fault)
     for place, watch in enumerate(watched):
         row = held[watch.role]
         residual, loop = outlook.residual_a[place], outlook.loop_s[place]
-        touchy = point.fault.cause == "touchy_device" and point.fault.at == watch.id
-        if touchy:
-            residual /= point.fault.scale
-        calm = 1 - point.fault.spontaneous if touchy else 1.0
+        calm, rated_a = 1.0, watch.rated_a
+        if acting:
+            residual /= band_scale(fault, watch.id, fault.at in watch.loads, watch.waveform)
+            if fault.at == watch.id and state in ONLY_IN.get(fault.cause, (state,)):
+                calm = 1 - min(fault.spontaneous, devices.CEILING)
+            if fault.at == watch.id and fault.cause == "hot_breaker":
+                rated_a *= fault.scale
         device, band = devices.DEVICES[watch.device], (watch.non_operating_ma, watch.operating_ma)
         plain = _trip(device, residual, 0.0, band)
         row[0] *= 1 - devices.FLOOR
         row[1] *= (1 - plain) * calm
         row[2] *= (1 - (_trip(device, residual, loop, band) if loop > LOOP_MATTERS_S else plain)) * calm
-        if watch.rated_a:
-            cool = 1 - devices.overcurrent_probability(watch.rated_a, outlook.line_a[place], minutes)
+        if rated_a:
+            line_a = outlook.line_a[place]
+            cool = 1 - devices.overcurrent_probability(rated_a, line_a, minutes, watch.curve)
+            start_a = _start_a(watch, fault, state, alone)
+            if start_a:
+                cool *= 1 - devices.inrush_probability(rated_a, line_a + start_a, watch.curve)
             held[watch.role] = [value * cool for value in row]
     return tuple((1 - row[0], 1 - row[1], 1 - row[2]) for row in (held[role] for role in ROLES))  # type: ignore[return-value]
+
+
+def _start_a(watch: Watch, fault: Fault, state: str, alone: str) -> float:
+    """By how many amperes the worst single start of a load in this state exceeds what it draws when it runs; 0 where none starts."""
+    running = watch.loads if state == contexts.AS_FOUND else (alone,) if state == "one_load" and alone in watch.loads else ()
+    more = 0.0
+    for load in running:
+        amperes, multiple = watch.loads[load]
+        if fault.cause == "inrush" and fault.at == load:
+            multiple = max(multiple, fault.scale)
+        more = max(more, (multiple - 1) * amperes)
+    return more
 
 
 def _trip(device: devices.Device, residual_a: float, loop_s: float, band: tuple[float | None, float | None]) -> float:

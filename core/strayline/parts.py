@@ -25,7 +25,7 @@ from strayline.components import (
     SYSTEMS,
     Parameter,
 )
-from strayline.devices import DEVICES, operating_band_ma
+from strayline.devices import DEVICES, USUAL_WAVEFORM, operating_band_ma, usual_curve
 from strayline.errors import CaseError
 
 MOST_PARTS = 8000  # a dock of 250 boats with thirty parts each
@@ -94,6 +94,24 @@ def breaker_rating_a(part: Part) -> float | None:
     if part.kind == "receptacle":
         return part.number("rated_a") or CONNECTORS[part.text("connector")].rated_a
     return part.number("rated_a") if "rated_a" in part.values else None
+
+
+def breaker_curve(part: Part, hertz: float) -> str:
+    """The release curve of the breaker a part holds, a key of `devices.CURVES`: stated, or usual at this frequency."""
+    stated = part.values.get("curve")
+    return usual_curve(hertz) if stated is None else str(stated)
+
+
+def waveform(part: Part) -> str:
+    """The type of the residual device a part holds, a key of `devices.WAVEFORMS`: stated, or usual."""
+    stated = part.values["waveform"]
+    return USUAL_WAVEFORM if stated is None else str(stated)
+
+
+def waits(part: Part) -> bool:
+    """Whether the device a part holds waits on purpose for one below it: by its stated delay, else by its kind."""
+    stated = part.number("delay_s")
+    return (DEVICES[part.text("device")].delay_s if stated is None else stated) > 0
 
 
 def splits(part: Part) -> bool:

@@ -12,19 +12,20 @@ import math
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
-from strayline import contexts, solve
+from strayline import contexts, devices, solve
+from strayline.aboard import load_ohms
 from strayline.boat import own_parts
 from strayline.catalogue.causes import CAUSE, CAUSES
 from strayline.causes import Effect, Fault, Shunt, effect
 from strayline.components import LINES, SYSTEMS
-from strayline.installation import build
+from strayline.installation import build, zone_parts
 from strayline.network import Network, nodes
-from strayline.parts import Installation, Part, base, breaker_rating_a
+from strayline.parts import Installation, Part, base, breaker_curve, breaker_rating_a, waits, waveform
 from strayline.severities import severities
-from strayline.wiring import EARTH
+from strayline.wiring import EARTH, Wiring
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Mapping, Sequence
 
     from strayline.equations import Probe
 
@@ -56,7 +57,12 @@ class Point:
 
 @dataclass(frozen=True, slots=True)
 class Watch:
-    """A sensor in a context: its part id, its role and its device key, with the case's own operating band where stated (mA)."""
+    """A sensor in a context: its part id, its role and its device key, with the case's own operating band where stated (mA).
+
+    rated_a, curve -- of the breaker in the same housing; 0 without one
+    waveform       -- its type, a key of `devices.WAVEFORMS`; waits -- it lets what is below it open first
+    loads          -- the loads behind it that are on: running amperes, and what multiple of them a start is stated to draw
+    """
 
     id: str
     role: str
@@ -64,6 +70,10 @@ class Watch:
     non_operating_ma: float | None
     operating_ma: float | None
     rated_a: float
+    curve: str = "na"
+    waveform: str = devices.USUAL_WAVEFORM
+    waits: bool = False
+    loads: Mapping[str, tuple[float, float]] = field(default_factory=dict, compare=False)
 
 
 @dataclass(frozen=True, slots=True)
@@ -144,15 +154,25 @@ def watches(installation: Installation) -> tuple[Watch, ...]:
     found: list[tuple[str, Part]] = [("feeder", part) for part in installation.of_kind("feeder")]
     found += [("pedestal", part) for part in mine if part.kind == "receptacle" and installation.children(part.id)]
     found += [("aboard", part) for part in mine if part.kind == "main"]
+    running, hertz = _running(installation), Wiring(installation).system.hertz
     return tuple(
-        Watch(part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"), _rated_a(part))
+        Watch(
+            part.id, role, part.text("device"), part.number("non_operating_ma"), part.number("operating_ma"),
+            breaker_rating_a(part) or 0.0, breaker_curve(part, hertz), waveform(part), waits(part),
+            {load: each for load, each in running.items() if load in zone_parts(installation, part)},
+        )
         for role, part in found
-    )
+    )  # fmt: skip
 
 
-def _rated_a(part: Part) -> float:
-    """Rated amperes of a receptacle's breaker (0 for other parts)."""
-    return breaker_rating_a(part) or 0.0 if part.kind == "receptacle" else 0.0
+def _running(installation: Installation) -> dict[str, tuple[float, float]]:
+    """Amperes of every load that is on, at its nominal volts, and by what its start is stated to multiply them."""
+    wiring, found = Wiring(installation), {}
+    for load in installation.of_kind("load"):
+        if load.flag("on"):
+            volts = wiring.nominal_volts(load.text("across"))
+            found[load.id] = (volts / abs(load_ohms(load, volts)), load.number("inrush") or 1.0)
+    return found
 
 
 def _outlooks(installation: Installation, points: tuple[Point, ...], context: str) -> tuple[tuple[Watch, ...], tuple[Outlook, ...]] | None:

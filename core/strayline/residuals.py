@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING, Any
 
 from strayline import devices, solve
@@ -10,7 +11,8 @@ from strayline.causes import applied
 from strayline.components import LINES
 from strayline.errors import CaseError
 from strayline.installation import build, zone_parts
-from strayline.parts import Installation, Part, base, breaker_rating_a, read
+from strayline.openings import band_scale
+from strayline.parts import Installation, Part, base, breaker_curve, breaker_rating_a, read, waveform
 from strayline.phasor import angle_deg, shown_angle
 from strayline.settle import settled
 
@@ -22,7 +24,6 @@ if TYPE_CHECKING:
     from strayline.network import Branch, Network
 
 LIKELY = 0.01  # a device below this is left out of the race
-USUAL_WAVEFORM = "a"  # what nobody states; North American devices have no letter and are taken as such (common practice)
 LONG_MINUTES = 60.0  # the hour of the conventional currents, IEC 60898-1
 THERMAL_S, AT_START_S = (5.0, 3600.0), (0.005, 0.05)  # when a breaker opens: warmed through, or by its magnetic release (common practice)
 CROSSING_KINDS = {
@@ -81,14 +82,9 @@ def residuals(case: Case) -> dict[str, Any]:
 
 
 def _band(part: Part, device: devices.Device, installation: Installation, faults: Iterable[Fault]) -> tuple[float | None, float | None]:
-    """A device's operating band in mA, moved by what its type of waveform does not cope with among the stated faults."""
-    scale = 1.0
-    waveform = devices.WAVEFORMS[part.text("waveform") if part.values["waveform"] is not None else USUAL_WAVEFORM]
-    for fault in faults:
-        at_it = fault.at == part.id if fault.cause == "touchy_device" else fault.at in zone_parts(installation, part)
-        copes = {"touchy_device": False, "drive_leakage": waveform.mixed, "rectified_leakage": waveform.smooth_dc[1] > 0.0}
-        if at_it and not copes.get(fault.cause, True):
-            scale *= fault.scale
+    """A device's operating band in mA, moved by the stated faults."""
+    zone = zone_parts(installation, part)
+    scale = math.prod(band_scale(fault, part.id, fault.at in zone, waveform(part)) for fault in faults)
     low, high = part.number("non_operating_ma"), part.number("operating_ma")
     if scale == 1.0 or not device.rated_ma:
         return low, high
@@ -114,8 +110,8 @@ def _breakers(installation: Installation, solution: solve.Solution) -> list[dict
             if load.kind == "load" and load.values["inrush"] is not None and f"{load.id}.switch" in present
         ]
         inrush_a = line_a + max(starts, default=0.0)
-        curve = part.text("curve") if part.values["curve"] is not None else "na" if hertz == 60.0 else "c"
-        slow = devices.overcurrent_probability(rated, line_a, LONG_MINUTES)
+        curve = breaker_curve(part, hertz)
+        slow = devices.overcurrent_probability(rated, line_a, LONG_MINUTES, curve)
         at_once = devices.inrush_probability(rated, inrush_a, curve) if starts else 0.0
         found.append({
             "id": part.id, "line_a": line_a, "inrush_a": inrush_a, "rating_a": rated,

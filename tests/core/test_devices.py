@@ -11,10 +11,9 @@ from hypothesis import strategies as st
 
 from strayline.devices import (
     CEILING,
-    CONVENTIONAL,
+    CURVES,
     DEVICES,
     FLOOR,
-    MAGNETIC_BANDS,
     PATTERNS,
     WAVEFORMS,
     class_a_longest_break_s,
@@ -161,21 +160,28 @@ def test_unpublished_break_time_is_unbounded() -> None:
     assert class_a_longest_break_s(5.9) == math.inf
 
 
-@given(st.sampled_from([16, 20, 30, 32, 50]), st.floats(0, 10), st.floats(0, 10), st.floats(0, 200), st.floats(0, 200))
-def test_more_current_or_time_opens_no_less(rated: float, one: float, other: float, early: float, late: float) -> None:
+@given(
+    st.sampled_from(sorted(CURVES)),
+    st.sampled_from([16, 20, 30, 32, 50]),
+    st.floats(0, 10),
+    st.floats(0, 10),
+    st.floats(0, 200),
+    st.floats(0, 200),
+)
+def test_more_current_or_time_opens_no_less(curve: str, rated: float, one: float, other: float, early: float, late: float) -> None:
     """The overcurrent probability never falls with more current or more minutes, and is never a hard zero or one."""
     low, high = sorted((one, other))
     early, late = sorted((early, late))
-    corner = overcurrent_probability(rated, low * rated, early)
-    assert 0 < FLOOR <= corner <= overcurrent_probability(rated, high * rated, early) <= CEILING < 1
-    assert corner <= overcurrent_probability(rated, low * rated, late)
+    corner = overcurrent_probability(rated, low * rated, early, curve)
+    assert 0 < FLOOR <= corner <= overcurrent_probability(rated, high * rated, early, curve) <= CEILING < 1
+    assert corner <= overcurrent_probability(rated, low * rated, late, curve)
 
 
 def test_magnetic_release() -> None:
     """A transformer's inrush of 12 times the rating opens a C breaker at once, a D breaker perhaps, and 2 times opens neither."""
     assert inrush_probability(16, 192, "c") > 0.95
     assert 0.05 < inrush_probability(16, 192, "d") < 0.5
-    assert max(inrush_probability(16, 32, curve) for curve in MAGNETIC_BANDS) < 0.05
+    assert max(inrush_probability(16, 32, curve) for curve in CURVES) < 0.05
 
 
 @given(shares, shares, shares, delays)
@@ -288,11 +294,11 @@ def test_what_blinds_a_device() -> None:
     assert smooth_dc_limit_ma(WAVEFORMS["b"], 10.0) == 10
 
 
-@pytest.mark.parametrize("curve", CONVENTIONAL)
+@pytest.mark.parametrize("curve", CURVES)
 def test_overcurrent_verdicts(curve: str) -> None:
     """A breaker holds up to its conventional non-tripping current, trips from its tripping current, and at once from its magnetic band."""
-    holds, trips = CONVENTIONAL[curve]
-    low, high = MAGNETIC_BANDS[curve]
+    holds, trips = CURVES[curve].thermal
+    low, high = CURVES[curve].at_once
     assert overcurrent_verdict(16, 16 * holds, 16 * holds, curve) == "holds"
     assert overcurrent_verdict(16, 16 * (holds + trips) / 2, 0, curve) == "may trip"
     assert overcurrent_verdict(16, 16 * trips, 0, curve) == "trips"

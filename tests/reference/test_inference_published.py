@@ -42,16 +42,16 @@ def test_elci_time() -> None:
 @pytest.mark.parametrize("rated_a", [16, 32, 50])
 def test_iec_60898_thermal(rated_a: float) -> None:
     """A breaker carries 1.13 times its rating for an hour and opens within an hour at 1.45 times (IEC 60898-1)."""
-    assert overcurrent_probability(rated_a, 1.13 * rated_a, 60) < 0.05
-    assert overcurrent_probability(rated_a, 1.45 * rated_a, 60) > 0.95
+    assert overcurrent_probability(rated_a, 1.13 * rated_a, 60, "c") < 0.05
+    assert overcurrent_probability(rated_a, 1.45 * rated_a, 60, "c") > 0.95
 
 
 @pytest.mark.parametrize(("rated_a", "minutes"), [(20, 2), (30, 2), (50, 4)])
 def test_ul_489_thermal(rated_a: float, minutes: float) -> None:
     """A breaker carries its rating, opens within an hour at 135 % and within 2 or 4 minutes at 200 % (UL 489, from memory)."""
-    assert overcurrent_probability(rated_a, rated_a, 24 * 60) < 0.05
-    assert overcurrent_probability(rated_a, 1.35 * rated_a, 60) > 0.95
-    assert overcurrent_probability(rated_a, 2 * rated_a, minutes) > 0.95
+    assert overcurrent_probability(rated_a, rated_a, 24 * 60, "na") < 0.05
+    assert overcurrent_probability(rated_a, 1.35 * rated_a, 60, "na") > 0.95
+    assert overcurrent_probability(rated_a, 2 * rated_a, minutes, "na") > 0.95
 
 
 @pytest.mark.parametrize(("curve", "holds", "opens"), [("b", 3, 5), ("c", 5, 10), ("d", 10, 20)])
