@@ -174,3 +174,32 @@ def _aboard() -> dict[str, Drawn]:
 
 
 DRAWN: dict[str, Drawn] = _supplies() | _connectors() | _adapters() | _aboard()
+
+
+def marina(system: str, boats: int, *, connector: str = "", per_post: int = 4) -> list[Row]:
+    """A whole dock: a feeder, posts along it, and a boat with four loads in every outlet, the outlets going round the lines.
+
+    Boat number n has outlet_n, cord_n, inlet_n, main_n, panel_n, hull_n and the loads heater_n, stove_n (off), charger_n and lamp_n.
+    """
+    usual = connector or USUAL[SYSTEMS[system].region]
+    rows: list[Row] = [{"id": "dock", "kind": "supply", "system": system}, {"id": "feeder", "kind": "feeder", "from": "dock"}]
+    for number in range(1, boats + 1):
+        post = f"post_{(number - 1) // per_post + 1}"
+        if number % per_post == 1 or per_post == 1:
+            rows.append({"id": post, "kind": "pedestal", "from": "feeder", "line_ohms": 0.002})
+        rows += [
+            {"id": f"outlet_{number}", "kind": "receptacle", "from": post, "connector": usual, "leg": leg(system, number)},
+            {"id": f"cord_{number}", "kind": "cord", "from": f"outlet_{number}"},
+            {"id": f"inlet_{number}", "kind": "inlet", "from": f"cord_{number}"},
+            {"id": f"main_{number}", "kind": "main", "from": f"inlet_{number}"},
+            {"id": f"panel_{number}", "kind": "panel", "from": f"main_{number}"},
+            {"id": f"breaker_{number}", "kind": "breaker", "from": f"panel_{number}"},
+            load(f"heater_{number}", watts=1000, element=True) | {"from": f"breaker_{number}"},
+            {"id": f"galley_{number}", "kind": "breaker", "from": f"panel_{number}"},
+            load(f"stove_{number}", watts=1200, element=True, on=False) | {"from": f"galley_{number}"},
+            {"id": f"cabin_{number}", "kind": "breaker", "from": f"panel_{number}"},
+            load(f"charger_{number}", watts=200, filter_nf=22) | {"from": f"panel_{number}"},
+            load(f"lamp_{number}", watts=60) | {"from": f"cabin_{number}"},
+            {"id": f"hull_{number}", "kind": "hull", "from": f"panel_{number}"},
+        ]
+    return rows
