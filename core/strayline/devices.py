@@ -8,8 +8,9 @@ from __future__ import annotations
 
 import itertools
 import math
+from collections.abc import Hashable
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeVar
 
 from strayline.errors import CaseError
 
@@ -332,10 +333,11 @@ def opening_times_s(device: Device, residual_a: float, delay_s: float | None = N
     return (set_s, set_s + DELAY_SPREAD_S) if set_s else (QUICKEST * longest, longest)
 
 
+Key = TypeVar("Key", bound=Hashable)
 STEPS_BETWEEN = 24  # of Simpson's rule between two moments at which a device begins or ceases to open
 
 
-def first_to_open(wanting: Mapping[str, tuple[float, tuple[float, float]]]) -> dict[str, float]:
+def first_to_open(wanting: Mapping[Key, tuple[float, tuple[float, float]]]) -> dict[Key, float]:
     """Probability that each device is the first to open: id -> probability; what is missing from one is that none opens.
 
     `wanting` -- id -> (probability that it opens at all, (seconds from which, seconds by which it has opened if it does))
@@ -347,7 +349,7 @@ def first_to_open(wanting: Mapping[str, tuple[float, tuple[float, float]]]) -> d
     moments = sorted({moment for _, times in wanting.values() for moment in times})
     found = dict.fromkeys(wanting, 0.0)
 
-    def opened(name: str, moment: float) -> float:
+    def opened(name: Key, moment: float) -> float:
         chance, (begin, end) = wanting[name]
         return chance * min(max((moment - begin) / (end - begin), 0.0), 1.0)
 

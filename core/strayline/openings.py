@@ -18,6 +18,10 @@ DEAD_SHARE = 0.03  # devices that no longer open
 MINUTES_HELD = {"as_found": 30.0, "one_load": 10.0, "light_load": 15.0, "test_load": 5.0}  # how long a state is held; else 1
 LOOP_MATTERS_S = 1e-3  # a loop of more than 1000 ohm trips no grounded-neutral detector
 
+ABSENT = {"pedestal": 0.15, "aboard": 0.5}  # share of docks and boats without a device where nobody says
+NOTHING = Fault("nothing_now")
+ONLY_IN = {"surge": (contexts.AS_FOUND,)}  # causes that open a device by themselves in these states only: nobody tests in a storm
+
 DEAD, WORKS, DETECTS = 0, 1, 2
 
 
@@ -30,8 +34,22 @@ class DeviceState:
     share: float
 
 
-NOTHING = Fault("nothing_now")
-ONLY_IN = {"surge": (contexts.AS_FOUND,)}  # nobody tests in a thunderstorm: causes that open a device by themselves in these states only
+def device_states(watched: Sequence[Watch], facts: Mapping[str, str]) -> tuple[DeviceState, ...]:
+    """Every state of the devices in this installation, with its share; shares sum to one."""
+    kinds = {watch.role: watch.device for watch in watched}
+    shares = {}
+    for role in ("pedestal", "aboard"):
+        device = devices.DEVICES[kinds.get(role, "none")]
+        unknown = facts.get(f"{role}_device", "unknown") == "unknown"
+        missing = 1.0 if not device.rated_ma else ABSENT[role] if unknown else DEAD_SHARE
+        works = 1 - missing
+        shares[role] = {DEAD: missing, WORKS: works * (1 - device.grounded_neutral), DETECTS: works * device.grounded_neutral}
+    return tuple(
+        DeviceState(pedestal, aboard, one * other)
+        for pedestal, one in shares["pedestal"].items()
+        for aboard, other in shares["aboard"].items()
+        if one * other > 0
+    )
 
 
 def acts_on_devices(fault: Fault) -> bool:
@@ -52,30 +70,25 @@ def band_scale(fault: Fault, device_id: str, seen: bool, waveform: str) -> float
     return fault.scale if seen and not copes.get(fault.cause, True) else 1.0
 
 
+def by_itself(fault: Fault, device_id: str, state: str) -> float:
+    """Probability that a fault opens this device in this state with no current at all."""
+    here = fault.at == device_id and state in ONLY_IN.get(fault.cause, (state,))
+    return min(fault.spontaneous, devices.CEILING) if here else 0.0
+
+
+def rating_scale(fault: Fault, breaker_id: str) -> float:
+    """By what a fault multiplies the rating of one breaker: a hot one opens below it."""
+    return fault.scale if fault.cause == "hot_breaker" and fault.at == breaker_id else 1.0
+
+
+def start_multiple(fault: Fault, load_id: str, stated: float) -> float:
+    """What multiple of its running current a load draws when it starts."""
+    return max(stated, fault.scale) if fault.cause == "inrush" and fault.at == load_id else stated
+
+
 def delayed_roles(watched: Sequence[Watch]) -> frozenset[str]:
     """The roles in which every device waits on purpose."""
     return frozenset(watch.role for watch in watched) - {watch.role for watch in watched if not watch.waits}
-
-
-ABSENT = {"pedestal": 0.15, "aboard": 0.5}  # share of docks and boats without a device where nobody says
-
-
-def device_states(watched: Sequence[Watch], facts: Mapping[str, str]) -> tuple[DeviceState, ...]:
-    """Every state of the devices in this installation, with its share; shares sum to one."""
-    kinds = {watch.role: watch.device for watch in watched}
-    shares = {}
-    for role in ("pedestal", "aboard"):
-        device = devices.DEVICES[kinds.get(role, "none")]
-        unknown = facts.get(f"{role}_device", "unknown") == "unknown"
-        missing = 1.0 if not device.rated_ma else ABSENT[role] if unknown else DEAD_SHARE
-        works = 1 - missing
-        shares[role] = {DEAD: missing, WORKS: works * (1 - device.grounded_neutral), DETECTS: works * device.grounded_neutral}
-    return tuple(
-        DeviceState(pedestal, aboard, one * other)
-        for pedestal, one in shares["pedestal"].items()
-        for aboard, other in shares["aboard"].items()
-        if one * other > 0
-    )
 
 
 # Per role the probability of opening when the device is dead, when it works, and when it also detects a grounded neutral.
@@ -109,10 +122,8 @@ def _chances(watched: tuple[Watch, ...], outlook: Outlook, fault: Fault, context
         calm, rated_a = 1.0, watch.rated_a
         if acting:
             residual /= band_scale(fault, watch.id, fault.at in watch.loads, watch.waveform)
-            if fault.at == watch.id and state in ONLY_IN.get(fault.cause, (state,)):
-                calm = 1 - min(fault.spontaneous, devices.CEILING)
-            if fault.at == watch.id and fault.cause == "hot_breaker":
-                rated_a *= fault.scale
+            calm -= by_itself(fault, watch.id, state)
+            rated_a *= rating_scale(fault, watch.id)
         device, band = devices.DEVICES[watch.device], (watch.non_operating_ma, watch.operating_ma)
         plain = _trip(device, residual, 0.0, band)
         row[0] *= 1 - devices.FLOOR
@@ -133,10 +144,8 @@ def _start_a(watch: Watch, fault: Fault, state: str, alone: str) -> float:
     running = watch.loads if state == contexts.AS_FOUND else (alone,) if state == "one_load" and alone in watch.loads else ()
     more = 0.0
     for load in running:
-        amperes, multiple = watch.loads[load]
-        if fault.cause == "inrush" and fault.at == load:
-            multiple = max(multiple, fault.scale)
-        more = max(more, (multiple - 1) * amperes)
+        amperes, stated = watch.loads[load]
+        more = max(more, (start_multiple(fault, load, stated) - 1) * amperes)
     return more
 
 

@@ -5,19 +5,19 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-from strayline import devices, solve
+from strayline import contexts, devices, solve
 from strayline.boat import own_parts
 from strayline.causes import applied
 from strayline.components import LINES
 from strayline.errors import CaseError
 from strayline.installation import build, zone_parts
-from strayline.openings import band_scale
+from strayline.openings import band_scale, by_itself, rating_scale, start_multiple
 from strayline.parts import Installation, Part, base, breaker_curve, breaker_rating_a, read, waveform
 from strayline.phasor import angle_deg, shown_angle
 from strayline.settle import settled
 
 if TYPE_CHECKING:
-    from collections.abc import Collection, Iterable
+    from collections.abc import Collection, Sequence
 
     from strayline.casefile import Case
     from strayline.causes import Fault
@@ -51,7 +51,8 @@ def residuals(case: Case) -> dict[str, Any]:
     """
     installation, network = stated_network(case)
     solution = solve.solve(network)
-    sensors, race = [], {}
+    sensors: list[dict[str, Any]] = []
+    race: dict[tuple[str, str], tuple[float, tuple[float, float]]] = {}
     for sensor in network.sensors:
         part, device = installation.part(sensor.id), devices.DEVICES[sensor.device]
         residual = solution.residual(sensor.id)
@@ -61,13 +62,19 @@ def residuals(case: Case) -> dict[str, Any]:
             "verdict": devices.verdict(device, abs(residual), *band),
         })  # fmt: skip
         chance = devices.trip_probability(device, abs(residual), non_operating_ma=band[0], operating_ma=band[1])
+        calm = math.prod(1.0 - by_itself(fault, part.id, contexts.AS_FOUND) for fault in case.faults)
+        chance = 1.0 - (1.0 - chance) * calm
         if chance > LIKELY and device.rated_ma:
-            race[sensor.id] = (chance, devices.opening_times_s(device, abs(residual), part.number("delay_s")))
-    breakers = _breakers(installation, solution)
+            race[sensor.id, "residual"] = (chance, devices.opening_times_s(device, abs(residual), part.number("delay_s")))
+    breakers = _breakers(installation, solution, case.faults)
     for row in breakers:
-        chance = row.pop("chance")
-        if chance > LIKELY and chance > race.get(row["id"], (0.0,))[0]:
-            race[row["id"]] = (chance, AT_START_S if row["inrush_a"] > row["line_a"] else THERMAL_S)
+        for why, times in (("overcurrent", THERMAL_S), ("start", AT_START_S)):
+            chance = row.pop(why)
+            if chance > LIKELY:
+                race[row["id"], why] = (chance, times)
+    first: dict[str, float] = {}
+    for (name, _), chance in devices.first_to_open(race).items():
+        first[name] = first.get(name, 0.0) + chance
     volts = [(name, solution.voltage(node)) for name, node in network.hulls]
     blades = [(blade.id, solution.voltage(blade.node)) for blade in network.blades]
     return {
@@ -75,13 +82,13 @@ def residuals(case: Case) -> dict[str, Any]:
         "breakers": breakers,
         "hulls": [{"id": name, "volts": abs(value), "angle_deg": angle_deg(value)} for name, value in volts if value is not None],
         "live_blades": [{"id": name, "volts": abs(value)} for name, value in blades if value is not None],
-        "opens_first": [{"id": name, "probability": chance} for name, chance in devices.first_to_open(race).items()],
+        "opens_first": [{"id": name, "probability": chance} for name, chance in first.items()],
         "crossings": _crossings(installation, network, solution),
         "floating": list(solution.floating),
     }
 
 
-def _band(part: Part, device: devices.Device, installation: Installation, faults: Iterable[Fault]) -> tuple[float | None, float | None]:
+def _band(part: Part, device: devices.Device, installation: Installation, faults: Sequence[Fault]) -> tuple[float | None, float | None]:
     """A device's operating band in mA, moved by the stated faults."""
     zone = zone_parts(installation, part)
     scale = math.prod(band_scale(fault, part.id, fault.at in zone, waveform(part)) for fault in faults)
@@ -92,8 +99,11 @@ def _band(part: Part, device: devices.Device, installation: Installation, faults
     return low * scale, high * scale
 
 
-def _breakers(installation: Installation, solution: solve.Solution) -> list[dict[str, Any]]:
-    """One row for each thermal-magnetic breaker; "chance" is the probability that it opens within an hour, or at the start."""
+def _breakers(installation: Installation, solution: solve.Solution, faults: Sequence[Fault]) -> list[dict[str, Any]]:
+    """One row for each thermal-magnetic breaker; "overcurrent" is the probability that it opens within an hour, "start" at once.
+
+    A short circuit is a start too.
+    """
     hertz = solution.network.hertz
     present = {branch.id for branch in solution.network.branches}
     found = []
@@ -104,18 +114,18 @@ def _breakers(installation: Installation, solution: solve.Solution) -> list[dict
         carried = {line: abs(solution.current(name)) for line in LINES if (name := f"{part.id}.{line}") in present}
         line_a = max(carried.values(), default=0.0)
         below = [installation.part(one) for one in installation.downstream(part.id)] if carried else []
-        starts = [
-            ((load.number("inrush") or 1.0) - 1.0) * abs(solution.current(f"{load.id}.switch"))
-            for load in below
-            if load.kind == "load" and load.values["inrush"] is not None and f"{load.id}.switch" in present
-        ]
-        inrush_a = line_a + max(starts, default=0.0)
+        more_a = 0.0  # what the worst single start draws beyond running
+        for load in (one for one in below if one.kind == "load" and f"{one.id}.switch" in present):
+            multiple = max([load.number("inrush") or 1.0, *(start_multiple(fault, load.id, 1.0) for fault in faults)])
+            more_a = max(more_a, (multiple - 1.0) * abs(solution.current(f"{load.id}.switch")))
+        inrush_a = line_a + more_a
+        rated_a = rated * math.prod(rating_scale(fault, part.id) for fault in faults)
         curve = breaker_curve(part, hertz)
-        slow = devices.overcurrent_probability(rated, line_a, LONG_MINUTES, curve)
-        at_once = devices.inrush_probability(rated, inrush_a, curve) if starts else 0.0
         found.append({
             "id": part.id, "line_a": line_a, "inrush_a": inrush_a, "rating_a": rated,
-            "verdict": devices.overcurrent_verdict(rated, line_a, inrush_a, curve), "chance": 1.0 - (1.0 - slow) * (1.0 - at_once),
+            "verdict": devices.overcurrent_verdict(rated_a, line_a, inrush_a, curve),
+            "overcurrent": devices.overcurrent_probability(rated_a, line_a, LONG_MINUTES, curve),
+            "start": devices.inrush_probability(rated_a, inrush_a, curve),
         })  # fmt: skip
     return found
 
