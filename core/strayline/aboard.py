@@ -6,9 +6,9 @@ import itertools
 import math
 from typing import TYPE_CHECKING
 
-from strayline.components import HULL_RADIUS_M, LINES, WATERS
+from strayline.components import HULL_RADIUS_M, LINES
 from strayline.errors import CaseError
-from strayline.water import hemisphere_ohms
+from strayline.water import WATERS, equivalent_radius_m, hemisphere_ohms
 from strayline.wiring import EARTH, SWITCH_OHMS, Wiring, short_ohms
 
 if TYPE_CHECKING:
@@ -121,9 +121,10 @@ def tap_node(part_id: str, position: float) -> str:
 
 
 def water_ohms(part: Part) -> float:
-    """Ohms from a hull's bare underwater metal to the water far away: stated, or those of a hemisphere of its radius."""
-    radius = part.number("radius_m") or HULL_RADIUS_M[part.text("material")]
-    return part.number("water_ohms") or hemisphere_ohms(WATERS[part.text("water")], radius)
+    """Ohms from a hull's bare underwater metal to the water far away: stated, or those of a hemisphere of its radius or area."""
+    area = part.number("bare_m2")
+    usual = HULL_RADIUS_M[part.text("material")] if area is None else equivalent_radius_m(area)
+    return part.number("water_ohms") or hemisphere_ohms(WATERS[part.text("water")].typical, part.number("radius_m") or usual)
 
 
 def hull(part: Part, wiring: Wiring) -> None:

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 from strayline.appliances import APPLIANCES
 from strayline.devices import CURVES, DEVICES, WAVEFORMS
+from strayline.water import WATERS
 
 NUMBER, CHOICE, FLAG, REFERENCE, REFERENCES = "number", "choice", "flag", "reference", "references"
 REQUIRED = object()
@@ -151,8 +152,6 @@ WIRED = ("straight", "line_neutral", "neutral_ground", "line_ground", "ground_op
 
 ACROSS = ("L1-N", "L2-N", "L3-N", "L1-L2", "L2-L3", "L1-L3")
 
-# Water: ohm metres, middle of what is met (sea water 0.2 to 0.33, brackish 0.5 to 10, fresh 10 to 200).
-WATERS: dict[str, float] = {"fresh": 50.0, "brackish": 3.0, "salt": 0.25}
 # Bare underwater metal as the radius of the hemisphere that has its area, in metres: a metal hull, or shaft and propeller alone.
 HULL_RADIUS_M: dict[str, float] = {"metal": 1.5, "grp": 0.5}
 
@@ -165,7 +164,7 @@ _NEUTRAL = Parameter("neutral_ohms", NUMBER, "ohm", None, 1e-9, 1e3)
 _GROUND = Parameter("ground_ohms", NUMBER, "ohm", None, 1e-9, 1e6)
 _CONNECTOR = Parameter("connector", CHOICE, "", None, choices=tuple(CONNECTORS))
 _RATED = Parameter("rated_a", NUMBER, "A", None, 1.0, 400.0)
-_CURVE = Parameter("curve", CHOICE, "", None, choices=tuple(CURVES), source="IEC 60898-1; \"na\": North American, without a letter")
+_CURVE = Parameter("curve", CHOICE, "", None, choices=tuple(CURVES), source='IEC 60898-1; "na": North American, without a letter')
 _WAVEFORM = Parameter("waveform", CHOICE, "", None, choices=tuple(WAVEFORMS), source="IEC 60755, IEC 62423")
 _DELAY = Parameter("delay_s", NUMBER, "s", None, 0.0, 5.0)
 _NON_OPERATING = Parameter("non_operating_ma", NUMBER, "mA", None, 0.1, 1e5)
@@ -324,7 +323,8 @@ KINDS: dict[str, tuple[Parameter, ...]] = {
         Parameter("afloat", FLAG, "", True),
         Parameter("material", CHOICE, "", "grp", choices=tuple(HULL_RADIUS_M)),
         Parameter("water", CHOICE, "", "fresh", choices=tuple(WATERS)),
-        Parameter("radius_m", NUMBER, "m", None, 0.01, 20.0, source="a plate of area A is the hemisphere of radius sqrt(A / 2 pi)"),
+        Parameter("radius_m", NUMBER, "m", None, 0.01, 20.0),
+        Parameter("bare_m2", NUMBER, "m2", None, 1e-3, 1e3, source="a plate of area A is the hemisphere of radius sqrt(A / 2 pi)"),
         Parameter("bond_ohms", NUMBER, "ohm", 0.05, 1e-9, 1e6),
         Parameter("water_ohms", NUMBER, "ohm", None, 1e-3, 1e6, source="hemisphere electrode, rho/(2 pi r)"),
     ),
