@@ -138,7 +138,7 @@ def _exchanged(places: int) -> Callable[[_Boat, str], list[Fault]]:
 
 
 def _neutral_ahead_of_device(boat: _Boat, cause: str) -> list[Fault]:
-    watched = [part for part in boat.of("main")[:1] if part.values["device"] != "none"]
+    watched = [part for part in boat.of("main")[:1] if part.values["device"] != "none" and part.flag("closed")]
     loads = [load for load in boat.of("load") if load.text("across") == "L1-N" and main_of(boat.installation, load) in watched]
     return [Fault(cause, at=part.id, load=load.id) for part in watched for load in loads[:2]]
 
