@@ -183,8 +183,8 @@ def _dead(name: str, network: Network, installation: Installation, mine: tuple[P
 
 
 def _to_a_meter(branch: Branch) -> Branch:
-    """A branch as a resistance meter's direct current sees it: a winding is its copper."""
-    return dataclasses.replace(branch, impedance=complex(branch.impedance.real)) if branch.kind == "winding" else branch
+    """A branch as a resistance meter's direct current sees it: conductors and windings are their copper."""
+    return branch if branch.kind == "load" else dataclasses.replace(branch, impedance=complex(branch.impedance.real))
 
 
 def meter_branch(panel: str) -> Branch:

@@ -17,7 +17,7 @@ EXCHANGES = {"line_neutral": ("L1", "N"), "neutral_ground": ("N", "G"), "line_gr
 
 def cord(part: Part, wiring: Wiring) -> None:
     """A cord, as long and thick as stated."""
-    wiring.through(part, _source(part, 0, wiring), wire_ohms(part))
+    wiring.through(part, _source(part, 0, wiring), wire_ohms(part, wiring.system.hertz))
 
 
 def inlet(part: Part, wiring: Wiring) -> None:

@@ -49,7 +49,7 @@ def supply(part: Part, wiring: Wiring) -> None:
 
 def feeder(part: Part, wiring: Wiring) -> None:
     """The dock's own cable."""
-    wiring.through(part, wiring.ends[part.parents[0]], wire_ohms(part))
+    wiring.through(part, wiring.ends[part.parents[0]], wire_ohms(part, wiring.system.hertz))
 
 
 def pedestal(part: Part, wiring: Wiring) -> None:

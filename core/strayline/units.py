@@ -19,7 +19,12 @@ COPPER_PER_KELVIN = 0.00393
 FLEXIBLE_OHM_PER_KM: dict[float, float] = {
     1.5: 13.3, 2.5: 7.98, 4.0: 4.95, 6.0: 3.30, 10.0: 1.91, 16.0: 1.21, 25.0: 0.780, 35.0: 0.554, 50.0: 0.386,
 }  # fmt: skip
+# Tinned strands have 2 to 3 % more and class 2 (stiff) 1 to 10 % less: within what a nominal size leaves open, so one column serves.
 LAY = 1.02  # strands of an American gauge are longer than their cable (ASTM B8: NEC chapter 9 table 8, stranded over solid)
+
+# NEC chapter 9 table 9, 60 Hz, plastic conduit: 0.043 to 0.058 ohm per thousand feet from 2/0 to 14 AWG; the middle serves for every size,
+# since only the thick ones feel it. It belongs to a conductor whose current comes back in the same cable.
+CONDUCTOR_HENRY_PER_M = 0.050 / (1000 * METRES_PER_FOOT) / (2 * math.pi * 60)
 
 # How each unit may be written behind a number. Milli and mega differ by their letter's case alone, so case is kept.
 SPELLINGS = {
@@ -103,3 +108,8 @@ def cable_ohms(length_m: float, area_mm2: float, celsius: float = 20) -> float:
     if listed is None:
         return LAY * copper_ohms(length_m, area_mm2, celsius)
     return listed / 1000 * length_m * (1 + COPPER_PER_KELVIN * (celsius - 20))
+
+
+def cable_reactance_ohms(length_m: float, hertz: float) -> float:
+    """Inductive reactance in ohms of one conductor of a cable, or of one of several in a conduit, whose currents return beside it."""
+    return 2 * math.pi * hertz * CONDUCTOR_HENRY_PER_M * length_m

@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 from strayline.components import LINES, SYSTEMS, System
 from strayline.network import Blade, Branch, Coupling, Isolator
 from strayline.phasor import polar
-from strayline.units import awg_area_mm2, cable_ohms
+from strayline.units import awg_area_mm2, cable_ohms, cable_reactance_ohms
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping, Sequence
@@ -96,7 +96,7 @@ class Wiring:
         """The branches that no switch leaves out."""
         return tuple(branch for branch in self.branches if branch.id not in self.opened)
 
-    def through(self, part: Part, source: Conductors, ohms: Mapping[str, float], conductors: Iterable[str] | None = None) -> None:
+    def through(self, part: Part, source: Conductors, ohms: Mapping[str, complex], conductors: Iterable[str] | None = None) -> None:
         """One branch per conductor, from the load end of the part before to this part's own load end."""
         ends: Conductors = {}
         for conductor in conductors if conductors is not None else source:
@@ -137,11 +137,12 @@ def lines_in(source: Mapping[str, str]) -> list[str]:
     return [line for line in LINES if line in source]
 
 
-def wire_ohms(part: Part) -> dict[str, float]:
-    """Ohms per conductor of a wired part: explicit where given, else from length, gauge and temperature."""
+def wire_ohms(part: Part, hertz: float) -> dict[str, complex]:
+    """Ohms per conductor of a wired part: the whole impedance where given, else from length, gauge and temperature, with its reactance."""
     awg = part.number("awg")
     area = awg_area_mm2(round(awg)) if awg is not None else part.number("area_mm2")
-    ohms = cable_ohms(part.number("length_m") or 0.0, area or 1.0, part.number("celsius") or 0.0)
+    length = part.number("length_m") or 0.0
+    ohms = complex(cable_ohms(length, area or 1.0, part.number("celsius") or 0.0), cable_reactance_ohms(length, hertz))
     return {
         "line": part.number("line_ohms") or ohms,
         "neutral": part.number("neutral_ohms") or part.number("line_ohms") or ohms,

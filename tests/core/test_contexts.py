@@ -49,6 +49,15 @@ def loads(installation: Installation) -> set[str]:
     return {part.id for part in own_parts(installation) if part.kind == "load"}
 
 
+@pytest.mark.parametrize("context", contexts.DEAD)
+def test_a_meter_sees_no_reactance(context: str) -> None:
+    """A meter's direct current sees the copper of what conducts; under power the same conductors have a reactance."""
+    installation = typical("one_cord")
+    _, dead = state(context, installation)
+    assert not any(branch.impedance.imag for branch in dead.branches if branch.kind != "load")
+    assert build(installation).branch("cord.L1").impedance.imag > 0
+
+
 @pytest.mark.parametrize("plug", ["one_cord", "one_cord_four_wire", "combining_y", "two_cords", "splitting_y"])
 @pytest.mark.parametrize(
     "context", ["pedestal_alone", "cord_alone", "main_off", "branches_off", "light_load", "suspect_out", "one_load:heater"]

@@ -7,7 +7,18 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from strayline.errors import StraylineError
-from strayline.units import METRES_PER_FOOT, SPELLINGS, QuantityError, awg_area_mm2, copper_ohms, parse_quantity
+from strayline.units import (
+    FLEXIBLE_OHM_PER_KM,
+    LAY,
+    METRES_PER_FOOT,
+    SPELLINGS,
+    QuantityError,
+    awg_area_mm2,
+    cable_ohms,
+    cable_reactance_ohms,
+    copper_ohms,
+    parse_quantity,
+)
 
 
 @pytest.mark.parametrize(
@@ -117,3 +128,35 @@ def test_copper_per_thousand_feet() -> None:
     """Solid copper has 1.21 ohms per thousand feet in 10 AWG and 3.07 in 14 AWG at 75 °C (NEC chapter 9, table 8, uncoated solid)."""
     assert copper_ohms(1000 * METRES_PER_FOOT, awg_area_mm2(10), 75) == pytest.approx(1.21, abs=0.006)
     assert copper_ohms(1000 * METRES_PER_FOOT, awg_area_mm2(14), 75) == pytest.approx(3.07, abs=0.006)
+
+
+def test_a_listed_size_is_laid_down_by_its_resistance() -> None:
+    """A nominal size has its greatest resistance, above that of copper of its name's area; no larger size has more."""
+    sizes = sorted(FLEXIBLE_OHM_PER_KM)
+    for size in sizes:
+        assert cable_ohms(1000, size) == pytest.approx(FLEXIBLE_OHM_PER_KM[size])
+        assert 1.1 < cable_ohms(1, size) / copper_ohms(1, size) < 1.17
+    assert [cable_ohms(1, size) for size in sizes] == sorted((cable_ohms(1, size) for size in sizes), reverse=True)
+
+
+def test_any_other_area_is_stranded_copper() -> None:
+    """An area that no size names, such as a gauge's, is copper with its strands' lay."""
+    for area in (5.26, awg_area_mm2(6), 4.001):
+        assert cable_ohms(7, area, 40) == pytest.approx(LAY * copper_ohms(7, area, 40))
+
+
+@pytest.mark.parametrize("celsius", [5, 10, 30, 50, 70, 75, 90])
+def test_the_temperature_laws_agree(celsius: float) -> None:
+    """One law serves: 254.5 / (234.5 + t) of IEC 60228 exactly, its simplified 250 / (230 + t) to 0.5 %, and NEC table 8's from 75 C."""
+    correction = cable_ohms(1, 2.5) / cable_ohms(1, 2.5, celsius)
+    assert correction == pytest.approx(254.5 / (234.5 + celsius), rel=2e-4)
+    assert correction == pytest.approx(250 / (230 + celsius), rel=5e-3)
+    assert cable_ohms(1, 2.5, celsius) / cable_ohms(1, 2.5, 75) == pytest.approx(1 + 0.00323 * (celsius - 75), rel=1e-3)
+
+
+def test_reactance_follows_length_and_frequency() -> None:
+    """Nothing at no length, and five sixths of it at 50 Hz; a thin cord hardly has any beside its resistance, a thick feeder has."""
+    assert cable_reactance_ohms(0, 60) == 0
+    assert cable_reactance_ohms(30, 50) / cable_reactance_ohms(30, 60) == pytest.approx(5 / 6)
+    assert cable_reactance_ohms(1, 50) / cable_ohms(1, 2.5) < 0.02
+    assert cable_reactance_ohms(1, 50) / cable_ohms(1, 50.0) > 0.3

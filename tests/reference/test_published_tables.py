@@ -26,13 +26,15 @@ from strayline.installation import build
 from strayline.network import Branch, Network
 from strayline.parts import read
 from strayline.solve import Solution, Sweep, factor, solve
-from strayline.units import METRES_PER_FOOT, awg_area_mm2, cable_ohms, copper_ohms
+from strayline.units import METRES_PER_FOOT, awg_area_mm2, cable_ohms, cable_reactance_ohms, copper_ohms
 
 if TYPE_CHECKING:
     from collections.abc import Callable
 
 KFT, HUNDRED_FEET = 1000 * METRES_PER_FOOT, 100 * METRES_PER_FOOT
 T8_STRANDED = {14: 3.14, 12: 1.98, 10: 1.24, 8: 0.778, 6: 0.491, 4: 0.308, 3: 0.245, 2: 0.194, 1: 0.154, 0: 0.122, -1: 0.0967}
+T9_REACTANCE = {14: 0.058, 12: 0.054, 10: 0.050, 8: 0.052, 6: 0.051, 4: 0.048, 2: 0.045, 0: 0.044, -1: 0.043}
+T9_EFFECTIVE = {14: 2.7, 12: 1.7, 10: 1.1, 8: 0.69, 6: 0.44, 4: 0.29, 2: 0.19, 0: 0.13, -1: 0.11}  # printed with two figures
 T8_SOLID = {14: 3.07, 12: 1.93, 10: 1.21, 8: 0.764}
 IDEAL = 1e-6
 
@@ -96,6 +98,18 @@ def drop_v(rows: list[Row], load_id: str) -> float:
     """Volts lost in both conductors of the cord under a load."""
     solution = solved(rows)
     return abs(solution.current(f"{load_id}.load")) * sum(solution.network.branch(f"cord.{name}").impedance.real for name in ("L1", "N"))
+
+
+def effective_ohms(awg: int) -> float:
+    """Volts lost for each ampere in a thousand feet of one conductor at 75 C, under a load with a power factor of 0.85."""
+    rows = cord_of(awg=awg, length_m=KFT, celsius=75)
+    rows[-2] = load("motor", ohms=1000, power_factor=0.85)  # before the hull
+    solution = solved(rows)
+
+    def across(part: str) -> float:
+        return abs((solution.voltage(f"{part}.L1") or 0) - (solution.voltage(f"{part}.N") or 0))
+
+    return (across("outlet1") - across("cord")) / abs(solution.current("motor.load")) / 2
 
 
 def open_neutral_v() -> float:
@@ -224,6 +238,20 @@ ROWS: list[tuple[str, str, Callable[[], float], float, float]] = [
         lambda: copper_ohms(1, 1) / cable_ohms(1, 35.0),
         31.121,
         1e-4,
+    ),
+    *(
+        (
+            f"reactance, {awg}",
+            "NEC ch. 9 table 9, plastic conduit: one value for all sizes",
+            lambda: cable_reactance_ohms(KFT, 60),
+            ohms,
+            0.17,
+        )
+        for awg, ohms in T9_REACTANCE.items()
+    ),
+    *(
+        (f"effective at 0.85, {awg}", "NEC ch. 9 table 9, plastic conduit, 75 C", lambda awg=awg: effective_ohms(awg), ohms, 0.05)
+        for awg, ohms in T9_EFFECTIVE.items()
     ),
     (
         "50 ft of 10 AWG, 30 A, 75 C: volts lost",
@@ -395,19 +423,18 @@ ROWS: list[tuple[str, str, Callable[[], float], float, float]] = [
 ]
 
 
-def cord_of(
-    *, awg: int | None = None, area_mm2: float | None = None, length_m: float, celsius: float = 20, amperes: float = 30
-) -> list[Row]:
+def cord_of(*, awg: int | None = None, area_mm2: float = 2.5, length_m: float, celsius: float = 20, amperes: float = 30) -> list[Row]:
     """A boat with one heater on a stiff dock behind a real cord."""
-    volts = {10: 120}.get(awg or 0, 230)
-    rows = stiff(*(("split_120_240", "30a_125v") if awg else ("single_230", "16a_230v")), load("heater", ohms=volts / amperes))
+    american = awg is not None
+    volts = 120 if american else 230
+    rows = stiff(*(("split_120_240", "30a_125v") if american else ("single_230", "16a_230v")), load("heater", ohms=volts / amperes))
     cord = next(row for row in rows if row["kind"] == "cord")
     for name in ("line_ohms", "neutral_ohms", "ground_ohms", "area_mm2"):
         cord.pop(name, None)
-    cord |= {"length_m": length_m, "celsius": celsius} | ({"awg": awg} if awg else {"area_mm2": area_mm2})
-    if awg or area_mm2:  # the load is made so that it draws its amperes behind the cord's own drop
-        ohms = 2 * cable_ohms(length_m, awg_area_mm2(awg) if awg else area_mm2 or 1.0, celsius)
-        next(row for row in rows if row["id"] == "heater")["ohms"] = volts / amperes - ohms
+    cord |= {"length_m": length_m, "celsius": celsius} | ({"awg": awg} if american else {"area_mm2": area_mm2})
+    # The load is made so that it draws its amperes behind the cord's own drop.
+    ohms = 2 * cable_ohms(length_m, area_mm2 if awg is None else awg_area_mm2(awg), celsius)
+    next(row for row in rows if row["id"] == "heater")["ohms"] = max(volts / amperes - ohms, 1.0)
     return rows
 
 
