@@ -63,6 +63,38 @@ class Triangle:
 
     size: int
     steps: tuple[Single | Pair, ...]
+    places: tuple[int, ...]  # for every unknown the number of the step that eliminates it
+    parents: tuple[int, ...]  # for every step the first later one that it changes, -1 for none: the elimination tree
+
+    def form(self, right: Mapping[int, complex]) -> complex:
+        """The quadratic form: `right` times the solution for `right`, from its non-zero entries.
+
+        The matrix is symmetric, so with y = the eliminated `right` it is y D^-1 y, and only the steps that its entries reach are gone
+        through, up the elimination tree: no solution is made.
+        """
+        x = [0j] * self.size
+        reached: set[int] = set()
+        for unknown, value in right.items():
+            x[unknown] = value
+            place = self.places[unknown]
+            while place >= 0 and place not in reached:
+                reached.add(place)
+                place = self.parents[place]
+        total = 0j
+        for place in sorted(reached):
+            step = self.steps[place]
+            if isinstance(step, Pair):
+                one, two = x[step.first], x[step.second]
+                p_one, q_two = step.p * one + step.q * two, step.q * one + step.r * two
+                total += one * p_one + two * q_two
+                for unknown, by_one, by_two in step.multipliers:
+                    x[unknown] -= by_one * one + by_two * two
+            else:
+                one = x[step.unknown]
+                total += one * one * step.inverse
+                for unknown, by_one in step.multipliers:
+                    x[unknown] -= by_one * one
+        return total
 
     def solve(self, right: Mapping[int, complex]) -> list[complex]:
         """Values of all unknowns for a right-hand side given by its non-zero entries."""
@@ -123,7 +155,12 @@ def eliminate(rows: list[Row], potentials: int) -> Triangle:
         chosen = _choose_from_all(rows, left, scale)
         steps.append(_take(rows, chosen))
         left.difference_update(chosen)
-    return Triangle(len(rows), tuple(steps))
+    places = [0] * len(rows)
+    for number, step in enumerate(steps):
+        for unknown in (step.first, step.second) if isinstance(step, Pair) else (step.unknown,):
+            places[unknown] = number
+    parents = tuple(min((places[entry[0]] for entry in step.multipliers), default=-1) for step in steps)
+    return Triangle(len(rows), tuple(steps), tuple(places), parents)
 
 
 def _choose(rows: list[Row], unknown: int, potentials: int, scale: list[float]) -> tuple[int, ...]:

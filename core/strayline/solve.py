@@ -103,7 +103,8 @@ class Factors:
         self._ports: dict[tuple[str, str], Port] = {}
         self._joined: dict[tuple[Shunt, ...], Factors] = {}
 
-    def _difference(self, x: list[complex], a: str, b: str) -> complex:
+    def difference(self, x: Sequence[complex], a: str, b: str) -> complex:
+        """The entry of a response for node a less that for node b."""
         at_a, at_b = self._equations.place(a), self._equations.place(b)
         return (x[at_a] if at_a >= 0 else 0j) - (x[at_b] if at_b >= 0 else 0j)
 
@@ -130,35 +131,45 @@ class Factors:
         found = self._ports.get((a, b))
         if found is None:
             probe = self.between(a, b)
-            joined = self._equations.connected(a, b)
-            impedance = self._difference(self._adjoint(probe), a, b) if joined else math.inf
-            found = self._ports[a, b] = Port(a, b, self.value(probe), impedance)
+            impedance: complex = math.inf
+            if probe in self._adjoints:
+                impedance = self.difference(self._adjoints[probe], a, b)
+            elif weights := self._equations.weights(probe):
+                COUNTS.triangular_solves += 1
+                impedance = self._triangle.form(weights)
+            elif self._equations.connected(a, b):
+                impedance = 0j  # both ends are one node
+            found = self._ports[a, b] = Port(a, b, self.solution().at(probe), impedance)
         return found
 
     def port_impedance(self, a: str, b: str) -> complex:
         """Impedance in ohms seen between two nodes with every source dead; infinite between islands."""
         return self.port(a, b).impedance
 
-    def _adjoint(self, probe: Probe) -> list[complex]:
+    def response(self, probe: Probe) -> list[complex]:
+        """The adjoint solution of a probe: how it answers an ampere into each node, and a volt in each current's row."""
         if probe not in self._adjoints:
             COUNTS.triangular_solves += 1
             self._adjoints[probe] = self._triangle.solve(self._equations.weights(probe) or {})
         return self._adjoints[probe]
 
+    def expect(self, a: str, b: str) -> None:
+        """Work out the whole response to a port at once: its mutual impedances with others will be asked for."""
+        if self._equations.connected(a, b):
+            self.response(self.between(a, b))
+
     def transfer(self, probe: Probe, a: str, b: str) -> complex:
         """K: by how much a probe's value falls for each ampere drawn out at a and put back at b."""
-        return self._difference(self._adjoint(probe), a, b)
+        return self.difference(self.response(probe), a, b)
 
     def window_admittance(self, sensor_id: str) -> complex:
         """Residual in amperes for each volt put in series with every enclosed conductor, supply to load, all sources dead."""
         probe = _window(self.network, sensor_id)
-        adjoint = self._adjoint(probe)
+        adjoint = self.response(probe)
         return -sum((weight * adjoint[place] for place, weight in (self._equations.weights(probe) or {}).items()), 0j)
 
-    def joined(self, shunts: Sequence[Shunt]) -> Factors | None:
-        """Fresh factors with the shunts as branches, if one of them joins two islands; else None, and no factors are needed."""
-        if all(self._equations.connected(a, b) for a, b, _ in shunts):
-            return None
+    def joined(self, shunts: Sequence[Shunt]) -> Factors:
+        """Fresh factors with the shunts as branches: what it takes where one of them joins two islands."""
         key = tuple(shunts)
         if key not in self._joined:
             extra = (Branch(f"shunt {place}", a, b, ohms, "leak", "shunt") for place, (a, b, ohms) in enumerate(key))
@@ -235,13 +246,23 @@ def probe_voltage(factors: Factors, a: str, b: str) -> Probe:
     return factors.between(a, b)
 
 
+@dataclass(frozen=True, slots=True)
+class _Seen:
+    """A port as a sweep sees it: its Thevenin pair, and for each probe and each window its value alone and its transfer from the port."""
+
+    volts: complex
+    impedance: complex
+    probes: list[tuple[complex, complex]]
+    windows: list[tuple[complex, complex]]
+
+
 class Sweep:
     """Many sets of shunts on one factored network: transfers and port impedances are kept, so a set costs a few multiplications.
 
     `probes` are read, and the loop through the window of each of `sensors`.
     """
 
-    __slots__ = ("_alone", "_base", "_factors", "_mutual", "_ports", "_windows", "probes", "sensors")
+    __slots__ = ("_alone", "_base", "_factors", "_mutual", "_ports", "_responses", "_windows", "probes", "sensors")
 
     def __init__(self, factors: Factors, probes: Sequence[Probe], sensors: Sequence[str] = ()) -> None:
         self._factors = factors
@@ -249,25 +270,27 @@ class Sweep:
         self.sensors = tuple(sensors)
         self._base = [factors.value(probe) for probe in self.probes]
         self._alone = [factors.window_admittance(sensor) for sensor in self.sensors]
-        self._windows = [_window(factors.network, sensor) for sensor in self.sensors]
-        self._ports: dict[tuple[str, str], tuple[complex, list[complex], list[complex]]] = {}
+        self._responses = [factors.response(probe) for probe in self.probes]
+        self._windows = [factors.response(_window(factors.network, sensor)) for sensor in self.sensors]
+        self._ports: dict[tuple[str, str], _Seen] = {}
         self._mutual: dict[tuple[str, str, str, str], complex] = {}
 
-    def _port(self, a: str, b: str) -> tuple[complex, list[complex], list[complex]]:
-        """Open voltage of a port, its transfers to the probes and to the windows."""
-        found = self._ports.get((a, b))
-        if found is None:
-            transfer = self._factors.transfer
-            probes = [transfer(probe, a, b) for probe in self.probes]
-            found = self._ports[a, b] = self._factors.port(a, b).open_voltage, probes, [transfer(window, a, b) for window in self._windows]
+    def _port(self, a: str, b: str) -> _Seen:
+        """What a port brings to the probes and to the windows."""
+        factors = self._factors
+        port = factors.port(a, b)
+        probes = [(value, factors.difference(response, a, b)) for value, response in zip(self._base, self._responses, strict=True)]
+        windows = [(alone, factors.difference(response, a, b)) for alone, response in zip(self._alone, self._windows, strict=True)]
+        found = self._ports[a, b] = _Seen(port.open_voltage, port.impedance, probes, windows)
         return found
 
     def _between(self, one: tuple[str, str], other: tuple[str, str]) -> complex:
-        """Volts at `one` for an ampere drawn at `other`: the mutual impedance of two ports."""
+        """Volts at `one` for an ampere drawn at `other`: the mutual impedance of two ports, or the impedance of one."""
         key = (*one, *other)
         found = self._mutual.get(key)
         if found is None:
-            found = self._mutual[key] = self._factors.mutual(one, other)
+            factors = self._factors
+            found = self._mutual[key] = factors.port_impedance(*one) if one == other else factors.mutual(one, other)
         return found
 
     def at(self, shunts: Sequence[Shunt]) -> tuple[list[complex], list[complex]]:
@@ -278,31 +301,35 @@ class Sweep:
         """
         if not shunts:
             return list(self._base), list(self._alone)
-        joined = self._factors.joined(shunts)
-        if joined is not None:
+        if len(shunts) > 1:
+            for a, b, _ in shunts:
+                if (a, b) not in self._ports:
+                    self._factors.expect(a, b)
+        seen = [self._ports.get((a, b)) or self._port(a, b) for a, b, _ in shunts]
+        if any(one.impedance == math.inf for one in seen):
+            joined = self._factors.joined(shunts)
             return [joined.value(probe) for probe in self.probes], [joined.window_admittance(sensor) for sensor in self.sensors]
-        ends = [(a, b) for a, b, _ in shunts]
-        ports = [self._port(a, b) for a, b in ends]
         if len(shunts) == 1:
-            total = shunts[0][2] + self._between(ends[0], ends[0])
+            (port,) = seen
+            total = shunts[0][2] + port.impedance
             if total == 0:
                 raise _cancelled(shunts)
-            volts, transfers, windows = ports[0]
-            drawn = volts / total
+            drawn = port.volts / total
             return (
-                [value - transfer * drawn for value, transfer in zip(self._base, transfers, strict=True)],
-                [alone + window * window / total for alone, window in zip(self._alone, windows, strict=True)],
+                [value - transfer * drawn for value, transfer in port.probes],
+                [alone + window * window / total for alone, window in port.windows],
             )
+        ends = [(a, b) for a, b, _ in shunts]
         matrix = [[self._between(one, other) for other in ends] for one in ends]
         for place, (_, _, ohms) in enumerate(shunts):
             matrix[place][place] += ohms
-        columns = [[port[0] for port in ports], *([port[2][place] for port in ports] for place in range(len(self.sensors)))]
+        columns = [[port.volts for port in seen], *([port.windows[place][1] for port in seen] for place in range(len(self.sensors)))]
         drawn_by, *loops = _gauss(matrix, columns, shunts)
         values = list(self._base)
-        for (_, transfers, _), current in zip(ports, drawn_by, strict=True):
-            values = [value - transfer * current for value, transfer in zip(values, transfers, strict=True)]
+        for port, current in zip(seen, drawn_by, strict=True):
+            values = [value - transfer * current for value, (_, transfer) in zip(values, port.probes, strict=True)]
         return values, [
-            alone + sum(port[2][place] * current for port, current in zip(ports, loop, strict=True))
+            alone + sum(port.windows[place][1] * current for port, current in zip(seen, loop, strict=True))
             for place, (alone, loop) in enumerate(zip(self._alone, loops, strict=True))
         ]
 

@@ -11,7 +11,7 @@ import sys
 from pathlib import Path
 
 HERE = Path(__file__).resolve().parent
-for folder in ("core", "webui", "tests/browser"):
+for folder in ("core", "webui", "tests/browser", "tests/core"):
     sys.path.insert(0, str(HERE.parents[1] / folder))
 
 
