@@ -131,14 +131,13 @@ class Factors:
         found = self._ports.get((a, b))
         if found is None:
             probe = self.between(a, b)
-            impedance: complex = math.inf
-            if probe in self._adjoints:
+            if not self._equations.connected(a, b):
+                impedance: complex = math.inf
+            elif probe in self._adjoints:
                 impedance = self.difference(self._adjoints[probe], a, b)
-            elif weights := self._equations.weights(probe):
+            else:
                 COUNTS.triangular_solves += 1
-                impedance = self._triangle.form(weights)
-            elif self._equations.connected(a, b):
-                impedance = 0j  # both ends are one node
+                impedance = self._triangle.form(self._equations.weights(probe) or {})
             found = self._ports[a, b] = Port(a, b, self.solution().at(probe), impedance)
         return found
 

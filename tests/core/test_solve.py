@@ -479,6 +479,15 @@ def test_port_between_islands() -> None:
     assert cmath.isnan(port.open_voltage)
 
 
+def test_a_probe_across_two_islands_hides_no_port() -> None:
+    """A voltage that is read between islands does not make the same two nodes look connected to a shunt."""
+    factors = factor(generator())
+    swept = Sweep(factors, [probe_voltage(factors, "g.1", "earth")])
+    (volts,), _ = swept.at([("g.1", "earth", 10 + 0j)])
+    assert not cmath.isnan(volts)
+    assert abs(volts) < 1e-6  # tied through ten ohms with no other road, it stands at earth
+
+
 def test_a_sweep_factors_once() -> None:
     """A hundred severities on two ports cost one factorization, one solve, and one adjoint for each probe and each port."""
     solving.COUNTS.factorizations = solving.COUNTS.triangular_solves = 0
