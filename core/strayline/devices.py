@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import itertools
 import math
+import operator
 from collections.abc import Hashable
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, TypeVar
@@ -334,7 +335,8 @@ def opening_times_s(device: Device, residual_a: float, delay_s: float | None = N
 
 
 Key = TypeVar("Key", bound=Hashable)
-STEPS_BETWEEN = 24  # of Simpson's rule between two moments at which a device begins or ceases to open
+PANELS_EACH = 6  # of Simpson's rule, for each opening expected in a stretch of time
+NOBODY_LEFT = 1e-12  # a race in which so little is left undecided is over
 
 
 def first_to_open(wanting: Mapping[Key, tuple[float, tuple[float, float]]]) -> dict[Key, float]:
@@ -344,23 +346,30 @@ def first_to_open(wanting: Mapping[Key, tuple[float, tuple[float, float]]]) -> d
 
     A model of the race: each opens independently, at a moment uniform between its two times. So a device that has surely opened before
     another may begin is first whenever it opens (selectivity), and two instantaneous ones are not coordinated. P(i first) is the
-    integral of p_i f_i(t) prod(1 - p_j F_j(t)) over t, piecewise a polynomial, by Simpson's rule between the times.
+    integral of p_i f_i(t) prod(1 - p_j F_j(t)) over t: between the times a polynomial, by Simpson's rule, to about six figures.
     """
     moments = sorted({moment for _, times in wanting.values() for moment in times})
     found = dict.fromkeys(wanting, 0.0)
-
-    def opened(name: Key, moment: float) -> float:
-        chance, (begin, end) = wanting[name]
-        return chance * min(max((moment - begin) / (end - begin), 0.0), 1.0)
-
     for early, late in itertools.pairwise(moments):
-        for name, (chance, (begin, end)) in wanting.items():
-            if not begin <= early < late <= end:
-                continue
-            values = [
-                math.prod(1.0 - opened(other, early + (late - early) * step / STEPS_BETWEEN) for other in wanting if other != name)
-                for step in range(STEPS_BETWEEN + 1)
-            ]
-            mean = (values[0] + values[-1] + 4.0 * math.fsum(values[1:-1:2]) + 2.0 * math.fsum(values[2:-1:2])) / (3.0 * STEPS_BETWEEN)
-            found[name] += chance * (late - early) / (end - begin) * mean
+        held = math.prod(1.0 - chance for chance, (_, end) in wanting.values() if end <= early)
+        rates = {  # of those that may open now: how much of their chance falls due each second, from when
+            name: (chance / (end - begin), begin) for name, (chance, (begin, end)) in wanting.items() if begin <= early and late <= end
+        }
+        panels = 1 + math.ceil(PANELS_EACH * (late - early) * math.fsum(rate for rate, _ in rates.values()))
+        width = (late - early) / panels
+        for panel in range(panels):
+            start = early + panel * width
+            points = [_others_hold(rates, start + share * width) for share in (0.0, 0.5, 1.0)]
+            for place, (name, (rate, _)) in enumerate(rates.items()):
+                found[name] += held * rate * width * (points[0][place] + 4.0 * points[1][place] + points[2][place]) / 6.0
+            if held * max(points[2]) < NOBODY_LEFT:
+                break
     return found
+
+
+def _others_hold(rates: Mapping[Key, tuple[float, float]], moment: float) -> list[float]:
+    """For each device, in order, the probability that all the others are still closed."""
+    closed = [1.0 - rate * (moment - begin) for rate, begin in rates.values()]
+    before = itertools.accumulate(closed[:-1], operator.mul, initial=1.0)
+    after = [*itertools.accumulate(closed[:0:-1], operator.mul, initial=1.0)][::-1]
+    return [one * other for one, other in zip(before, after, strict=True)]

@@ -269,6 +269,14 @@ def test_first_openers_and_none_make_one(rows: list[tuple[float, float, float]])
     assert sum(first.values()) == pytest.approx(1 - math.prod(1 - chance for chance, _, _ in rows), abs=1e-6)
 
 
+@pytest.mark.parametrize("count", [2, 30, 600])
+def test_many_alike_share_the_race(count: int) -> None:
+    """On a whole dock of equal devices each is first as often as any other, and together they are whenever one opens."""
+    first = first_to_open(dict.fromkeys(range(count), (0.9, (0.02, 0.2))))
+    assert sum(first.values()) == pytest.approx(1 - 0.1**count, abs=1e-5)
+    assert max(first.values()) == pytest.approx(min(first.values()))
+
+
 @pytest.mark.parametrize("device", WATCHING, ids=lambda device: device.id)
 @given(residual_a=st.floats(0, 50))
 def test_opening_times_are_in_order(device, residual_a: float) -> None:
