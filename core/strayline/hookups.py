@@ -12,7 +12,7 @@ import itertools
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from strayline.components import ADAPTERS, ASHORE, CONNECTORS, SYSTEMS
+from strayline.components import ADAPTERS, ASHORE, CONNECTORS, LINES, SYSTEMS
 from strayline.contexts import raw_rows
 from strayline.parts import Installation, Part, base, read
 
@@ -146,10 +146,10 @@ def _usual(part: Part, installation: Installation) -> str:
     """The commonest connector that brings the lines which the loads behind a part need."""
     system = SYSTEMS[installation.of_kind("supply")[0].text("system")]
     below = [installation.part(part_id) for part_id in installation.downstream(part.id)]
-    loads = [one for one in below if one.kind == "load"]
+    wide = any(line in one.text("across") for one in below if one.kind == "load" for line in LINES[1:])
     if system.hertz == 50.0:
-        return "32a_400v" if any("L2" in load.text("across") for load in loads) else "16a_230v"
-    return "50a_125_250v" if any("L2" in load.text("across") for load in loads) else "30a_125v"
+        return "32a_400v" if wide else "16a_230v"
+    return "50a_125_250v" if wide else "30a_125v"
 
 
 def _fit_homemade(part: Part, installation: Installation, plugs: dict[str, tuple[str, ...]], outlets: dict[str, tuple[str, ...]]) -> None:

@@ -234,7 +234,9 @@ def latents(installation: Installation) -> list[list[Latent]]:
 
 
 def inverter_latents(installation: Installation) -> list[Latent]:
-    """An inverter's own bond is closed while shore power is away: it is seen only with the cord out."""
+    """An inverter's own bond is closed while shore power is away: it is seen only with the cord out. A drawn one shows its own."""
+    if installation.of_kind("inverter"):
+        return [Latent("inverter", "yes", 1.0)]
     panel = next((part.id for part in own_parts(installation) if part.kind == "panel"), "panel")
     relay = Shunt("idle_relay", f"{panel}.N", f"{panel}.G", 0.05 + 0j, "bond", panel, contexts.ENERGISED)
     return [Latent("inverter", "yes", 0.3, (relay,)), Latent("inverter", "no", 0.7)]

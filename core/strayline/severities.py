@@ -15,6 +15,7 @@ from strayline.causes import Fault
 from strayline.components import CONNECTORS, SYSTEMS
 from strayline.leaks import TESTER_VOLTS, first_line
 from strayline.parts import base, splits
+from strayline.wiring import nominal_volts
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -79,6 +80,11 @@ class _Boat:
     def exchangeable(self) -> list[Part]:
         """Where two conductors may have changed places: an adapter, a cord, an inlet with one supply end."""
         return [part for part in self.of("adapter", "cord", "inlet") if len(part.parents) == 1 and not splits(part)]
+
+    @property
+    def load_volts(self) -> float:
+        """Volts across a load between the first line and what the boat calls neutral."""
+        return nominal_volts("L1-N", self.system, self.system.volts)
 
     @property
     def leaks(self) -> list[float]:
@@ -160,7 +166,7 @@ def _touchy_device(boat: _Boat, cause: str) -> list[Fault]:
 
 def _overload(boat: _Boat, cause: str) -> list[Fault]:
     loads = [load for load in boat.biggest if load.text("across") == "L1-N"][:1]
-    return [Fault(cause, at=load.id, ohms=boat.system.volts / (boat.rated_a * more)) for load in loads for more in (0.2, 0.5, 0.9)]
+    return [Fault(cause, at=load.id, ohms=boat.load_volts / (boat.rated_a * more)) for load in loads for more in (0.2, 0.5, 0.9)]
 
 
 def _nothing_now(_: _Boat, cause: str) -> list[Fault]:
@@ -340,7 +346,7 @@ def _short_circuit(boat: _Boat, cause: str) -> list[Fault]:
 
 
 def _low_voltage(boat: _Boat, cause: str) -> list[Fault]:
-    drop = boat.system.volts / boat.rated_a
+    drop = boat.load_volts / boat.rated_a
     return [Fault(cause, at=part.id, ohms=share * drop) for part in boat.of("cord")[:1] for share in (0.08, 0.15, 0.3)]
 
 
