@@ -126,7 +126,7 @@ def _plain_wheel(folder: Path) -> Path:
 def _compiled_stdlib(pyodide: Path) -> Path:
     """The standard library as .pyc, kept from build to build: it takes most of a build and changes only with Pyodide."""
     source = pyodide / STDLIB
-    key = _hash(source.read_bytes() + (HERE / "compile_zip.py").read_bytes())[:16]
+    key = _hash(b"".join(path.read_bytes() for path in (source, HERE / "compile_zip.py", HERE / "runtime.mjs")))[:16]
     kept = KEPT / key / STDLIB
     if not kept.is_file():
         shutil.rmtree(KEPT, ignore_errors=True)
