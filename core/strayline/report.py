@@ -101,6 +101,11 @@ def residuals_text(found: dict[str, Any]) -> str:
     for sensor in found["sensors"]:
         rating = "no device" if sensor["rating_ma"] is None else f"{sensor['rating_ma']:g} mA device"
         lines.append(f"  {sensor['id']:<14} {current_text(sensor['residual_ma'] / 1e3):>9}  {rating:<14} {sensor['verdict']}")
+    if found["breakers"]:
+        lines.append("Current through each breaker")
+        for row in found["breakers"]:
+            start = f", {row['inrush_a']:.1f} A at the worst start" if row["inrush_a"] > row["line_a"] else ""
+            lines.append(f"  {row['id']:<14} {row['line_a']:>7.1f} A  of {row['rating_a']:g} A{start}  {row['verdict']}")
     for title, key in (("Volts of each hull against the water", "hulls"), ("Volts of each bare blade", "live_blades")):
         if found[key]:
             lines += [title, *(f"  {row['id']:<14} {row['volts']:>7.2f} V" for row in found[key])]
