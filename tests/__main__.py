@@ -1,6 +1,7 @@
-"""`python3 tests [full|bench] [pytest arguments]`: makes its environment, runs the tests and every check, prints one summary.
+"""`python3 tests [full|bench|study] [arguments]`: makes its environment, runs the tests and every check, prints one summary.
 
-With pytest arguments (`python3 tests -k phasor`) only pytest runs. Exit status 0 only when everything that ran passed.
+With pytest arguments (`python3 tests -k phasor`) only pytest runs; `bench` and `study` are programs of their own, in their folders.
+Exit status 0 only when everything that ran passed.
 """
 
 from __future__ import annotations
@@ -27,14 +28,14 @@ STRICT = os.environ.get("CI", "").lower() == "true"
 
 def main(arguments: list[str]) -> int:
     """Run what the arguments ask for and return the exit status."""
-    mode = arguments.pop(0) if arguments[:1] in (["full"], ["bench"]) else ""
+    mode = arguments.pop(0) if arguments[:1] in (["full"], ["bench"], ["study"]) else ""
     try:
         python = bootstrap.environment("tests", HERE / "requirements.lock")
     except bootstrap.MissingToolError as error:
         print(error, file=sys.stderr)
         return 1
-    if mode == "bench":
-        return bootstrap.run(python, HERE / "bench", *arguments, cwd=ROOT, env=_environment())
+    if mode in ("bench", "study"):
+        return bootstrap.run(python, HERE / mode, *arguments, cwd=ROOT, env=_environment())
     pytest = [python, "-m", "pytest", *([] if mode == "full" else ["-m", "not full"]), *arguments]
     rows = [_row("pytest", lambda: bootstrap.run(*pytest, cwd=ROOT, env=_environment()))]
     if not arguments:
