@@ -306,6 +306,12 @@ def _broken(boat: _Boat, cause: str) -> list[Fault]:
     return [Fault(cause, at=part.id) for part in (*boat.plugged[:1], *boat.of("cord")[:1])]
 
 
+def _open_neutral(boat: _Boat, cause: str) -> list[Fault]:
+    """As any broken conductor, but for an outlet that is off and opens its neutral too."""
+    off = {part.id for part in boat.of("receptacle") if not part.flag("closed") and CONNECTORS[part.text("connector")].opens == "all"}
+    return [fault for fault in _broken(boat, cause) if fault.at not in off]
+
+
 def _wet_feeder(boat: _Boat, cause: str) -> list[Fault]:
     posts = [boat.installation.part(base(part.parents[0])) for part in boat.plugged[:1]]
     feeders = [base(post.parents[0]) for post in posts if boat.installation.part(base(post.parents[0])).kind == "feeder"]
@@ -397,7 +403,7 @@ _GRIDS: dict[str, Callable[[_Boat, str], list[Fault]]] = {
     "shared_neutral_branch": _shared_neutral_branch,
     "shared_outlet_neutral": _shared_outlet_neutral,
     "open_ground": _broken,
-    "open_neutral": _broken,
+    "open_neutral": _open_neutral,
     "wet_feeder": _wet_feeder,
     "other_loads_on_device": _other_loads_on_device,
     "foreign_current": _foreign_current,

@@ -22,7 +22,8 @@ if TYPE_CHECKING:
 
 EARTH = "earth"
 SWITCH_OHMS = 0.002
-OPPOSITE = 180.0  # a second line that the shore does not have is made aboard, opposite to the first
+# Degrees of the lines that the shore does not have: a second one is made aboard, opposite to the first; a third is as on three phases.
+ELSEWHERE = {"L2": 180.0, "L3": 120.0}
 MAGNETISING, LEAKAGE, COPPER = 0.03, 0.03, 0.01  # of a transformer, as shares of its rating (common practice)
 
 Conductors = dict[str, str]  # conductor name -> node
@@ -34,7 +35,7 @@ def nominal_volts(across: str, system: System, phase_volts: float) -> float:
     """Volts RMS across a load where nothing drops: between two lines, or from a line to what the boat calls neutral."""
     first, second = across.split("-")
     if second != "N":
-        one, other = (system.lines.get(line, OPPOSITE) for line in (first, second))
+        one, other = (system.lines[line] if line in system.lines else ELSEWHERE[line] for line in (first, second))
         return phase_volts * abs(polar(1, one) - polar(1, other))
     return phase_volts if system.neutral else phase_volts * math.sqrt(3.0)  # without a neutral, N is another line
 

@@ -1,21 +1,25 @@
-"""Random installations: every valid one is solved, every invalid one is refused by name."""
+"""Random installations: every valid one, and whatever else the tables allow, is solved; every invalid one is refused by name."""
 
 from __future__ import annotations
 
 import cmath
+import dataclasses
+import json
 import random
 import re
 
 import pytest
 
-from drawn_installations import MUTATIONS, invalid, valid
+from drawn import boat, dock, load
+from drawn_installations import MUTATIONS, Row, allowed, invalid, parents, valid
 from strayline.casefile import read_case
 from strayline.catalogue.causes import CAUSE
-from strayline.components import KINDS
+from strayline.causes import Fault
+from strayline.components import KINDS, PARENTS, SYSTEMS
 from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.network import nodes
-from strayline.parts import read
+from strayline.parts import base, read
 from strayline.residuals import residuals, stated_network
 from strayline.severities import severities
 from strayline.solve import crossings, solve
@@ -23,26 +27,23 @@ from strayline.solve import crossings, solve
 KEYS = {"sensors", "breakers", "hulls", "live_blades", "opens_first", "crossings", "floating"}
 
 
-def with_a_fault(seed: int) -> dict[str, object]:
-    """A raw case: a drawn installation, and half the time a fault that it can have."""
-    rows = valid(seed)
+def with_a_fault(rows: list[Row], seed: int) -> dict[str, object]:
+    """A raw case: these parts, and more often than not a fault that they can have."""
     draw = random.Random(seed)
     faults = []
-    if draw.random() < 0.5:
+    if draw.random() < 0.7:
         grid = severities(draw.choice(list(CAUSE)), read({"parts": rows}))
         if grid:
             fault = draw.choice(grid).fault
-            faults = [
-                {name: getattr(fault, name) for name in ("cause", "at", "load", "ohms", "position", "nanofarads") if getattr(fault, name)}
-            ]
+            faults = [{name: value for name, value in dataclasses.asdict(fault).items() if value != getattr(Fault(fault.cause), name)}]
+            faults[0]["cause"] = fault.cause
     return {"schema": 1, "installation": {"parts": rows}, "faults": faults}
 
 
-def check(seed: int) -> set[str]:
-    """No crash, no number that is not one, the current law at every node, crossings that add up, a whole reply; the kinds it held."""
-    raw = with_a_fault(seed)
-    case = read_case(raw)
-    installation, network = stated_network(case)
+def check(rows: list[Row], seed: int) -> tuple[list[Row], str]:
+    """No crash, no number that is not one, the current law at every node, crossings that add up, a whole reply; the rows and the cause."""
+    case = read_case(with_a_fault(rows, seed))
+    _, network = stated_network(case)
     solution = solve(network)
     balance = dict.fromkeys(nodes(network), 0j)
     for branch in network.branches:
@@ -57,36 +58,74 @@ def check(seed: int) -> set[str]:
     found = residuals(case)
     assert set(found) == KEYS
     assert {row["id"] for row in found["sensors"]} == {sensor.id for sensor in network.sensors}
-    assert all(row["residual_ma"] >= 0 for row in found["sensors"])
-    return {part.kind for part in installation.parts}
+    json.dumps(found, allow_nan=False)
+    return rows, case.faults[0].cause if case.faults else ""
 
 
 def refused(seed: int) -> str:
-    """The rule by which an invalid installation is refused."""
+    """An invalid installation is refused by the rule that it breaks, at the key that breaks it; the rule."""
+    rows, where, rule = invalid(seed)
     with pytest.raises(CaseError) as caught:
-        build(read({"parts": invalid(seed)}))
-    assert re.match(r"installation(\.parts(\[\d+\](\.\w+)?)?)?$", caught.value.where), caught.value
-    assert caught.value.rule
-    return re.sub(r"\W.*", "", caught.value.rule)
+        build(read({"parts": rows}))
+    assert re.fullmatch(where, caught.value.where), caught.value
+    assert rule in caught.value.rule, caught.value
+    return rule
 
 
 def test_random_valid_installations() -> None:
-    """Two hundred drawn installations, between them every kind of part, are solved."""
-    assert set().union(*(check(seed) for seed in range(200))) == set(KINDS)
+    """Two hundred drawn boats on their docks, between them every kind of part and many a cause, are solved."""
+    drawn = [check(valid(seed), seed) for seed in range(200)]
+    assert {row["kind"] for rows, _ in drawn for row in rows} == set(KINDS)
+    assert len({cause for _, cause in drawn}) > 30
+
+
+def test_whatever_the_tables_allow() -> None:
+    """Two hundred lists of parts, between them every part on every other that may carry it and every parameter stated, are solved."""
+    hangs, stated = set(), set()
+    for seed in range(200):
+        rows, _ = check(allowed(seed), seed)
+        kinds = {row["id"]: row["kind"] for row in rows}
+        hangs |= {(row["kind"], kinds[base(parent)]) for row in rows for parent in parents(row) if parent}
+        stated |= {(row["kind"], name) for row in rows for name in row}
+    assert {(kind, parent) for kind in PARENTS for parent in PARENTS[kind]} - hangs <= set()
+    assert {(kind, parameter.name) for kind in KINDS for parameter in KINDS[kind]} - stated <= set()
 
 
 def test_random_invalid_installations() -> None:
-    """Two hundred drawn installations with one thing wrong are each refused with a rule and where it is broken."""
-    assert len({refused(seed) for seed in range(200)}) >= 5
-    assert len(MUTATIONS) >= 12
+    """Two hundred drawn installations, each with one thing made wrong in every way we know, are refused at the key that is wrong."""
+    assert len({refused(seed) for seed in range(max(200, 3 * len(MUTATIONS)))}) > 20
+
+
+@pytest.mark.parametrize("system", SYSTEMS)
+def test_a_plug_with_more_lines_than_the_dock(system: str) -> None:
+    """A boat of three lines whose plug hangs loose has loads of a size, whatever the dock beside it brings."""
+    loose = [load("pump", across="L2-L3", watts=900), load("fan", across="L1-L3", amperes=3)]
+    rows = [*dock(system), *boat("", *loose)]
+    case = read_case({"schema": 1, "installation": {"parts": rows}})
+    assert all(row["residual_ma"] < 1e-9 for row in residuals(case)["sensors"])
+
+
+def test_no_neutral_to_break_in_an_outlet_that_is_off() -> None:
+    """An outlet that is off and has opened its neutral too is not offered as the place of a broken neutral; one that keeps it is."""
+    for connector, system, expected in (("16a_230v", "single_230", {"cord"}), ("30a_125v", "split_120_240", {"outlet1", "cord"})):
+        rows = [row | ({"closed": False} if row["kind"] == "receptacle" else {}) for row in [*dock(system, connector), *boat("outlet1")]]
+        assert {one.fault.at for one in severities("open_neutral", read({"parts": rows}))} == expected
 
 
 @pytest.mark.full
 @pytest.mark.timeout(1200)
 def test_ten_thousand_valid_installations() -> None:
-    """So are ten thousand."""
+    """So are ten thousand boats."""
     for seed in range(1000, 11_000):
-        check(seed)
+        check(valid(seed), seed)
+
+
+@pytest.mark.full
+@pytest.mark.timeout(1200)
+def test_ten_thousand_lists_of_parts() -> None:
+    """And ten thousand lists that the tables allow."""
+    for seed in range(1000, 11_000):
+        check(allowed(seed), seed)
 
 
 @pytest.mark.full
