@@ -93,6 +93,20 @@ def test_the_core_still_gives_this_reply(name: str) -> None:
     assert json.loads(handle(json.dumps(PAIRS[name]["request"]))) == PAIRS[name]["reply"]
 
 
+# What these are for is said unasked, or is no answer.
+OUT_OF_ORDER = {"stop_found_burnt", "stop_late", "error_no_such_question", "error_fix_of_nothing", "error_value_is_no_text"}
+
+
+@pytest.mark.parametrize("name", sorted(set(CASES) - OUT_OF_ORDER))
+def test_a_case_answers_what_it_is_asked(name: str) -> None:
+    """Each answer of a case is to the question or test that its screen put, so that a journey can tap it through."""
+    request = WRITE["request_of"](name)
+    for place, answer in enumerate(request["answers"]):
+        reply = json.loads(handle(json.dumps({**request, "answers": request["answers"][:place]})))
+        form = reply["screen"]["form"] if "screen" in reply else None
+        assert form is None or (form["question"], form["subject"]) == (answer["question"], answer["subject"]), place
+
+
 @pytest.mark.parametrize("name", PAIRS)
 def test_a_case_shows_what_it_is_for(name: str) -> None:
     """Each case ends on the screen that cases.toml says it is for, so that no pair drifts to another kind of screen."""
