@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from strayline.errors import CaseError
 from strayline.installation import zone_parts
 from strayline.parts import base
 
@@ -30,8 +31,21 @@ def own_parts(installation: Installation, panel_id: str | None = None) -> tuple[
 
 
 def panel_of(installation: Installation, load: Part) -> Part:
-    """The panel a load hangs on, through whatever stands between (an inverter counts as one where there is no other)."""
-    return next(part for kinds in (("panel",), ("inverter",)) for part in _above(installation, load) if part.kind in kinds)
+    """The panel a load hangs on, through whatever stands between (an inverter counts as one where there is no other).
+
+    Raises CaseError for a load ashore.
+    """
+    for kind in ("panel", "inverter"):
+        for part in _above(installation, load):
+            if part.kind == kind:
+                return part
+    raise CaseError("at", "must be a load aboard", load.id)
+
+
+def other_panel(installation: Installation, load: Part) -> Part | None:
+    """Another panel of the boat that a load is on, None where its own is the only one."""
+    own = panel_of(installation, load)
+    return next((part for part in own_parts(installation, own.id) if part.kind == "panel" and part.id != own.id), None)
 
 
 def main_of(installation: Installation, load: Part) -> Part:

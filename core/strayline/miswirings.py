@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import dataclasses
 
-from strayline.boat import own_parts, panel_of
+from strayline.boat import other_panel
 from strayline.errors import CaseError
 from strayline.faults import Change, Effect, Fault, Shunt, boat_of, chain_of, own_panel, stated_ohms, stated_part
 from strayline.network import Blade, Branch, Network, with_branches, without_branches
@@ -72,8 +72,7 @@ def neutral_ahead_of_device(installation: Installation, network: Network, fault:
 def crossed_neutral(installation: Installation, network: Network, fault: Fault) -> Effect:
     """A load's neutral lands on the other panel of its boat."""
     load = stated_part(installation, fault.at, "load")
-    panel = panel_of(installation, load)
-    other = next((part for part in own_parts(installation, panel.id) if part.kind == "panel" and part.id != panel.id), None)
+    other = other_panel(installation, load)
     if other is None or not load.text("across").endswith("-N"):
         raise CaseError("at", "must be a load with a neutral, on a boat with two panels", load.id)
     return Effect(_landed(network, load, f"{other.id}.N"))

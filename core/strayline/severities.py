@@ -10,7 +10,7 @@ import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from strayline.boat import main_of, own_parts
+from strayline.boat import main_of, other_panel, own_parts
 from strayline.causes import Fault
 from strayline.components import CONNECTORS, SYSTEMS
 from strayline.leaks import TESTER_VOLTS, first_line
@@ -278,14 +278,17 @@ def _reversed_with(*milliamperes: float, hard: tuple[float, ...] = ()) -> Callab
 
 
 def _crossed_neutral(boat: _Boat, cause: str) -> list[Fault]:
-    loads = [load for load in boat.of("load") if load.text("across") == "L1-N"] if len(boat.of("panel")) > 1 else []
+    if len(boat.of("panel")) < 2:
+        return []
+    loads = [load for load in boat.of("load") if load.text("across") == "L1-N" and other_panel(boat.installation, load)]
     return [Fault(cause, at=load.id) for load in loads[:BIGGEST]]
 
 
 def _shared_neutral_branch(boat: _Boat, cause: str) -> list[Fault]:
     watched = [part for part in boat.of("breaker") if part.values.get("device", "none") != "none"]
     loads = [load for load in boat.of("load") if load.text("across").endswith("-N")]
-    with_neutral = [part for part in watched if any(part.id in load.parents for load in loads)]
+    joined = [part for part in watched if part.flag("closed") or part.number("poles") == 1]  # two open poles leave no neutral there
+    with_neutral = [part for part in joined if any(part.id in load.parents for load in loads)]
     return [
         Fault(cause, at=part.id, load=load.id)
         for part in with_neutral[:1]

@@ -14,13 +14,14 @@ from drawn import boat, dock, load
 from drawn_installations import MUTATIONS, Row, allowed, invalid, parents, valid
 from strayline.casefile import read_case
 from strayline.catalogue.causes import CAUSE
-from strayline.causes import Fault
+from strayline.causes import Fault, applied
 from strayline.components import KINDS, PARENTS, SYSTEMS
 from strayline.errors import CaseError
 from strayline.installation import build
 from strayline.network import nodes
 from strayline.parts import base, read
 from strayline.residuals import residuals, stated_network
+from strayline.settle import settled
 from strayline.severities import severities
 from strayline.solve import crossings, solve
 
@@ -72,6 +73,33 @@ def refused(seed: int) -> str:
     return rule
 
 
+def every_grid(rows: list[Row]) -> set[str]:
+    """Have every severity of every cause that these parts can have applied; the causes."""
+    installation = read({"parts": rows})
+    network = build(installation)
+    faults = [severity.fault for cause in CAUSE for severity in severities(cause, installation)]
+    for fault in faults:
+        applied(installation, network, [fault])
+    return {fault.cause for fault in faults}
+
+
+def any_fault(rows: list[Row], seed: int) -> list[str]:
+    """Have every cause stated anywhere, with any numbers, solved or refused; the key paths of the refusals."""
+    installation = read({"parts": rows})
+    network = build(installation)
+    draw = random.Random(seed)
+    places = [part.id for part in installation.parts] + ["", "nowhere"]
+    refusals = []
+    for cause in CAUSE:
+        sizes = {"ohms": draw.choice((0, 0.01, 1e5)), "position": draw.choice((0, 0.3, 1, 2)), "nanofarads": draw.choice((0, 50))}
+        fault = Fault(cause, draw.choice(places), draw.choice(places), **sizes, scale=draw.choice((0, 0.5)), duty=draw.choice((0.3, 1)))
+        try:
+            solve(settled(applied(installation, network, [fault])))
+        except CaseError as error:
+            refusals.append(error.where)
+    return refusals
+
+
 def test_random_valid_installations() -> None:
     """Two hundred drawn boats on their docks, between them every kind of part and many a cause, are solved."""
     drawn = [check(valid(seed), seed) for seed in range(200)]
@@ -94,6 +122,27 @@ def test_whatever_the_tables_allow() -> None:
 def test_random_invalid_installations() -> None:
     """Two hundred drawn installations, each with one thing made wrong in every way we know, are refused at the key that is wrong."""
     assert len({refused(seed) for seed in range(max(200, 3 * len(MUTATIONS)))}) > 20
+
+
+def test_every_cause_takes_its_own_grid() -> None:
+    """What the grid of a cause offers for drawn installations its effect takes, and between them they offer every cause."""
+    assert set().union(*(every_grid(draw(seed)) for seed in range(150) for draw in (valid, allowed))) == set(CAUSE)
+
+
+def test_any_fault_stated_anywhere() -> None:
+    """A fault stated where it cannot be is refused at its key, every other one is solved."""
+    refusals = [any_fault(draw(seed), seed) for seed in range(40) for draw in (valid, allowed)]
+    assert all(0 < len(wheres) < len(CAUSE) for wheres in refusals)
+    assert all(re.fullmatch(r"faults\[0\]\.(at|load|ohms|position|nanofarads|duty)", where) for wheres in refusals for where in wheres)
+
+
+def test_a_fault_of_a_load_ashore() -> None:
+    """A fault that needs a load's own panel is refused for a load on the dock: it has none."""
+    rows = [*dock("single_230", "16a_230v"), *boat("outlet1"), load("ashore", watts=60) | {"from": "post"}]
+    for cause in ("crossed_neutral", "frame_strap", "overload"):
+        raw = {"schema": 1, "installation": {"parts": rows}, "faults": [{"cause": cause, "at": "ashore", "ohms": 0.01}]}
+        with pytest.raises(CaseError, match=r"faults\[0\]\.at: must be a load aboard"):
+            stated_network(read_case(raw))
 
 
 @pytest.mark.parametrize("system", SYSTEMS)
@@ -126,6 +175,16 @@ def test_ten_thousand_lists_of_parts() -> None:
     """And ten thousand lists that the tables allow."""
     for seed in range(1000, 11_000):
         check(allowed(seed), seed)
+
+
+@pytest.mark.full
+@pytest.mark.timeout(1200)
+def test_a_hundred_thousand_faults() -> None:
+    """And every cause stated anywhere in two thousand installations is solved or refused."""
+    for seed in range(1000, 2000):
+        for draw in (valid, allowed):
+            any_fault(draw(seed), seed)
+            every_grid(draw(seed))
 
 
 @pytest.mark.full
