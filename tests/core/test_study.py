@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import json
 import math
 import random
@@ -20,7 +21,6 @@ import scores
 from forbidden import judged, proposal_of
 from plots import SIDE, reliability_plot
 from strayline import contexts, session
-from strayline.catalogue.causes import CAUSE
 from strayline.catalogue.tests import TEST
 from strayline.network import Branch, Network, Sensor
 from strayline.parts import read
@@ -197,7 +197,7 @@ def test_a_short_study_runs_and_prints() -> None:
     for number in range(4):
         one = cases.draw(8, number)
         world = referee.World(one)
-        records += [player.play(one, world, row, policy, 0.05) for row in (USER, CLAMP) for policy in player.POLICIES]
+        records += [player.play(one, world, row, policy, 0.05) for row in (USER, CLAMP) for policy in ("flow", "fixed", "probable")]
     assert {record["verdict"] for record in records} <= {"named", "group", "nothing_now", "unknown", "danger", "halted"}
     assert [record["unsafe"] for record in records if record["unsafe"]] == []
     assert sum(record["proposals"] for record in records) > 40
@@ -261,19 +261,25 @@ def test_a_flow_without_its_filter_is_found_out(monkeypatch: pytest.MonkeyPatch)
 
 # --- scores --------------------------------------------------------------------------------------------------------
 
+GIVEN = (
+    ("gate", "none"), ("role", "user"), ("tools", "none"), ("supply", "single_230"), ("plug", "one_cord"), ("pedestal_device", "device_30"),
+    ("aboard_device", "device_30"), ("opened", "pedestal"), ("when", "any_load"), ("afloat", "afloat"),
+)  # fmt: skip
 PLAIN: dict[str, Any] = {
     "causes": ["panel_bond"], "verdict": "named", "shown": ["panel_bond"], "leader": "panel_bond", "top": 0.95, "share": 0.95,
-    "grouped": False, "benign": False, "peril": [], "lethal": True, "warned": True, "found": [],
+    "flaws": [], "benign": False, "peril": [], "lethal": True, "warned": True, "found": [],
 }  # fmt: skip
 
 
 def test_a_group_is_right_only_where_it_counts() -> None:
     """The truth in second place of a group is right if the group counts and wrong if it does not; first place is always right."""
     second = PLAIN | {"verdict": "group", "shown": ["frame_strap", "panel_bond"], "leader": "frame_strap"}
-    assert scores.right(second | {"grouped": True})
-    assert not scores.right(second)
-    assert scores.right(second | {"causes": ["frame_strap"]})
-    assert not scores.right_alone(second | {"grouped": True})
+    assert scores.right(second)
+    assert scores.right(second | {"flaws": ["was separable"]})
+    for flaw in ("too many", "separable", "advice", "repairer", "deadliness"):
+        assert not scores.right(second | {"flaws": [flaw]})
+        assert scores.right(second | {"flaws": [flaw], "causes": ["frame_strap"]})
+    assert not scores.right_alone(second)
 
 
 def test_sure_and_wrong_and_missed_are_told_apart() -> None:
@@ -297,12 +303,13 @@ def test_outside_the_list_only_unknown_is_right() -> None:
 
 
 def test_groups_are_alike_in_what_to_do() -> None:
-    """Causes with another repairer or other advice for tonight are no group."""
-    assert player._alike(["panel_bond", "frame_strap"]) == (
-        CAUSE["panel_bond"].repair == CAUSE["frame_strap"].repair and player._alike(["frame_strap", "panel_bond"])
-    )
-    assert not player._alike(["wet_cord", "wet_pedestal"])  # the user dries the one, an electrician the other
-    assert not player._alike(["overload", "wet_cord"])
+    """Causes with other advice for tonight, another repairer or another danger are no group, and nor are four, nor what a test parts."""
+    ended = session.replay([Answer(question, None, value, seq) for seq, (question, value) in enumerate(GIVEN, 1)])
+    assert player.flaws(ended, ["panel_bond"]) == []
+    found = {flaw for causes in itertools.combinations(ended.marginal, 2) for flaw in player.flaws(ended, causes)}
+    assert found == {"separable", "advice", "repairer", "deadliness"}
+    assert "too many" in player.flaws(ended, list(ended.marginal)[:4])
+    assert {"repairer", "advice"} <= set(player.flaws(ended, ["wet_cord", "wet_pedestal"]))  # a user dries the one, a trade the other
 
 
 def test_intervals_are_those_of_the_formula() -> None:

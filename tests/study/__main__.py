@@ -57,7 +57,7 @@ def _options(arguments: list[str]) -> argparse.Namespace:
     parser.add_argument("--rows", type=_row, nargs="+", default=list(ROWS), help="role/tools")
     parser.add_argument("--wrong", type=float, default=0.05, help="share of wrong answers of the main run")
     parser.add_argument("--rates", type=float, nargs="*", default=[], help="other shares of wrong answers to print as well")
-    parser.add_argument("--policies", nargs="+", choices=POLICIES, default=list(POLICIES))
+    parser.add_argument("--policies", nargs="+", choices=POLICIES, default=["flow", "fixed", "probable"])
     parser.add_argument("--variants", nargs="*", choices=[name for name in VARIANTS if name], default=[])
     parser.add_argument("--variant-cases", type=int, default=None, help="cases a row in each variant")
     parser.add_argument("--workers", type=int, default=2)

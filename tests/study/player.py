@@ -73,10 +73,16 @@ def probable_first(session: Session, candidates: Sequence[Candidate]) -> str | N
     return next_test.verification(session.hypotheses, session.weights, candidates, leader)
 
 
+def everything(_session: Session, candidates: Sequence[Candidate]) -> str | None:
+    """Whatever may still be done, quickest first: with no stop, it shows what the evidence could tell if nobody minded the time."""
+    return min(candidates, key=lambda candidate: (candidate.minutes, candidate.id)).id if candidates else None
+
+
 POLICIES: dict[str, Callable[[Session, Sequence[Candidate]], str | None] | None] = {
     "flow": None,  # what the session itself proposes
     "fixed": fixed_order,
     "probable": probable_first,
+    "everything": everything,
 }
 
 
@@ -115,7 +121,7 @@ class Player:
         """Go on until the case ends, and return the session in which it did."""
         while True:
             session = self._session()
-            if session.verdict or session.halted or self.over or len(self.answers) >= LONGEST:
+            if session.halted or self.over or len(self.answers) >= LONGEST or self._satisfied(session):
                 return session
             if session.marginal is not None and self.policy != "flow":
                 self._by_policy(session)
@@ -124,6 +130,12 @@ class Player:
                 self._say(question, subject, self.witness.question(question, self.facts))
             elif session.test:
                 self._do(session.test)
+
+    def _satisfied(self, session: Session) -> bool:
+        """Whether a verdict ends it: for all but `everything`, which stops at danger only, or with nothing left to do."""
+        if self.policy != "everything" or session.verdict in (None, "danger"):
+            return bool(session.verdict)
+        return not _candidates(session)
 
     def _by_policy(self, session: Session) -> None:
         """A step of another policy: questions that cost nothing first, then its test; the posterior and the stop are the core's."""
@@ -137,6 +149,8 @@ class Player:
             return
         candidates = _candidates(session)
         why = next_test.stop(hypotheses, session.weights, candidates, session.tests_done, len(session.misfits))
+        if self.policy == "everything":
+            why = None
         # Between a reason to stop and the verdict the flow may still want one test, which is then its own to name.
         chosen = session.test if why and session.test else POLICIES[self.policy](session, candidates)  # type: ignore[misc]
         if chosen is None:
@@ -196,7 +210,7 @@ def play(case: Case, world: World, row: Row, policy: str, wrong: float) -> dict[
         "verdict": verdict, "shown": shown, "leader": leader, "top": marginal.get(leader, 0.0),
         "share": sum(marginal.get(cause, 0.0) for cause in shown),
         "truth_share": sum(marginal.get(cause, 0.0) for cause in case.causes),
-        "grouped": len(shown) > 1 and ranked is not None and _inseparable(ranked, shown) and _alike(shown),
+        "flaws": flaws(ranked, shown), "answers": [[one.question, one.subject, one.value] for one in player.answers],
         "benign": verdict in ("named", "group", "nothing_now") and not any(CAUSE[cause].lethal for cause in shown),
         "warned": ranked is not None and bool(set(_lethal_lines()) & set(tonight_of(ranked))),
         "tests": player.hands, "unread": player.unread, "questions": player.questions,
@@ -212,17 +226,14 @@ def _pair(player: Player, session: Session, found: list[str]) -> Session:
         shown = _shown(session, player.ranked)
         told = session.verdict or player.over
         if told in ("named", "group", "danger"):
-            found += [cause for cause in shown if cause in player.case.causes and (len(shown) == 1 or _fair(player.ranked, shown))][:1]
+            fair = shown if not flaws(player.ranked, shown) else shown[:1]
+            found += [cause for cause in fair if cause in player.case.causes][:1]
         if told not in ("named", "group") or len(found) == 2:
             break
         player.over = ""
         player.repaired(shown)
         session = player.to_the_end()
     return session
-
-
-def _fair(ranked: Session | None, shown: Sequence[str]) -> bool:
-    return ranked is not None and _inseparable(ranked, shown) and _alike(shown)
 
 
 def _shown(session: Session, ranked: Session | None) -> list[str]:
@@ -234,32 +245,44 @@ def _shown(session: Session, ranked: Session | None) -> list[str]:
     return [max(ranked.marginal, key=ranked.marginal.__getitem__)]
 
 
-def _inseparable(session: Session, causes: Sequence[str]) -> bool:
-    """Whether these are at most three causes that no test this person may do, or did, tells apart: by total variation, on every test."""
+def flaws(ranked: Session | None, causes: Sequence[str]) -> list[str]:
+    """Why several causes shown together do not count as a group; empty where they do, and for one alone.
+
+    "separable" -- a test this person may still do tells two of them apart; "was separable" -- one that was done did, and is not held
+    against it, because it has been used
+    """
+    if ranked is None or len(causes) < 2:
+        return []
+    done = [answer.question for answer in ranked.answers if answer.question in TEST and answer.value not in (UNKNOWN, CANNOT)]
+    found = ["too many"] if len(causes) > LARGEST_GROUP else []
+    found += ["separable"] if _apart(ranked, causes, ranked.allowed) else []
+    found += ["was separable"] if _apart(ranked, causes, done) else []
+    for name, same in (
+        ("advice", {WORDS[f"cause.{cause}.tonight"] for cause in causes}),
+        ("repairer", {CAUSE[cause].repair for cause in causes}),
+        ("deadliness", {CAUSE[cause].lethal for cause in causes}),
+    ):
+        found += [name] if len(same) > 1 else []
+    return found
+
+
+def _apart(session: Session, causes: Sequence[str], tests: Sequence[str]) -> bool:
+    """Whether any of these tests tells two of these causes apart, by total variation under what is now believed."""
     evidence, hypotheses = session.evidence, session.hypotheses
     assert evidence is not None
     assert hypotheses is not None
-    if len(causes) > LARGEST_GROUP:
-        return False
-    done = [answer.question for answer in session.answers if answer.question in TEST and answer.value not in (UNKNOWN, CANNOT)]
     weights = np.asarray(session.weights)
-    for test in dict.fromkeys((*session.allowed, *done)):
-        outcomes = evidence.outcomes("test", test)
-        if not outcomes:
+    for test in dict.fromkeys(tests):
+        table = np.asarray(list((evidence.outcomes("test", test) or {}).values()))
+        if not table.size:
             continue
-        table = np.asarray(list(outcomes.values()))
         rows = []
         for cause in causes:
             members = list(hypotheses.members[hypotheses.causes.index(cause)])
             rows.append(table[:, members] @ weights[members] / max(weights[members].sum(), 1e-300))
         if any(np.abs(one - other).sum() / 2 > INSEPARABLE for one in rows for other in rows):
-            return False
-    return True
-
-
-def _alike(causes: Sequence[str]) -> bool:
-    """Whether causes share tonight's advice, who repairs them, and whether they are deadly."""
-    return len({(WORDS[f"cause.{cause}.tonight"], CAUSE[cause].repair, CAUSE[cause].lethal) for cause in causes}) == 1
+            return True
+    return False
 
 
 def _lethal_lines() -> tuple[str, ...]:

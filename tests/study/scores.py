@@ -2,7 +2,7 @@
 
 right      -- what is put first at the end is the truth: the one cause shown first, or one of a group that counts
 group      -- counts only with at most three causes that no test this person may do tells apart (total variation at most .05 on every
-              one) and that share tonight's advice, repairer and deadliness (`player`)
+              one) and that share tonight's advice to the word, repairer and deadliness (`player.flaws`)
 sure wrong -- what is shown holds at least 90 % and the truth is not in it
 missed     -- deadly by the solve (live metal, current in the water, broken ground or neutral, bare blades) and told as benign: a verdict
               whose causes are none of them deadly. `missed_any` counts every cause that the catalogue calls deadly, `unwarned` those of
@@ -79,12 +79,17 @@ class Mean:
         return means[int(0.025 * RESAMPLES)], means[int(0.975 * RESAMPLES) - 1]
 
 
+def counts(record: Record) -> bool:
+    """Whether what is shown together counts as a group."""
+    return not set(record["flaws"]) - {"was separable"}
+
+
 def right(record: Record) -> bool:
     """Whether the cause, or a group that counts with the cause in it, is put first. Outside the list only "unknown" is right."""
     if all(cause.startswith("outside:") for cause in record["causes"]):
         return bool(record["verdict"] == "unknown")
     shown = record["shown"]
-    return bool(shown) and (shown[0] in record["causes"] or (record["grouped"] and any(cause in record["causes"] for cause in shown)))
+    return bool(shown) and (shown[0] in record["causes"] or (counts(record) and any(cause in record["causes"] for cause in shown)))
 
 
 def right_alone(record: Record) -> bool:
@@ -153,6 +158,15 @@ def confusions(records: Iterable[Record]) -> Counter[tuple[str, str]]:
             shown = " | ".join(record["shown"]) or record["verdict"]
             found["+".join(record["causes"]), shown if told(record) else f"? {shown}"] += 1
     return found
+
+
+def uncounted(records: Iterable[Record]) -> Counter[str]:
+    """Why groups with the truth in them, but not first, did not count: all flaws of each, together."""
+    return Counter(
+        ", ".join(record["flaws"])
+        for record in records
+        if not right(record) and any(cause in record["shown"] for cause in record["causes"])
+    )
 
 
 def by_cause(records: Iterable[Record]) -> dict[str, tuple[Share, Share, Mean]]:

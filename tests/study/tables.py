@@ -27,6 +27,7 @@ from scores import (
     spent,
     sure_wrong,
     told,
+    uncounted,
     unknown_ends,
     unwarned,
 )
@@ -164,6 +165,8 @@ def _held_back(name: str, own: Sequence[Record]) -> list[str]:
     lines = [f"what holds {name} back ({len(own)} cases)", "  confusions: truth -> shown (? : not told as a verdict)"]
     for (truth, shown), count in confusions(own).most_common(MOST):
         lines.append(f"    {count:4d}  {count / len(own):.3f}  {truth} -> {shown}")
+    lines.append("  the truth was shown, second or third, and the group does not count: why")
+    lines += [f"    {count:4d}  {count / len(own):.3f}  {why}" for why, count in uncounted(own).most_common()]
     lines.append("  dangerous misses: truth -> shown, by the solve first")
     for rule, mark in ((missed, "by the solve"), (lambda record: missed_any(record) and not missed(record), "by the catalogue")):
         worst = Counter(("+".join(record["causes"]), " | ".join(record["shown"])) for record in own if rule(record))
