@@ -4,18 +4,23 @@ from __future__ import annotations
 
 import os
 import shutil
+from pathlib import Path
+from typing import NoReturn
 
 import pytest
 
+import bootstrap
+
+
+def _missing(sentence: str) -> NoReturn:
+    """Skip the test by name; in CI, where nothing may be skipped unseen, fail it."""
+    if os.environ.get("CI", "").lower() == "true":
+        pytest.fail(sentence)
+    pytest.skip(sentence)
+
 
 def _tool(name: str, package: str) -> str:
-    found = shutil.which(name)
-    if found is None:
-        sentence = f"{name} is missing; install it (on Debian or Ubuntu: apt-get install {package})"
-        if os.environ.get("CI", "").lower() == "true":
-            pytest.fail(sentence)
-        pytest.skip(sentence)
-    return found
+    return shutil.which(name) or _missing(f"{name} is missing; install it (on Debian or Ubuntu: apt-get install {package})")
 
 
 @pytest.fixture(scope="session")
@@ -28,3 +33,12 @@ def ngspice() -> str:
 def chromium() -> str:
     """The path of the Chromium that the browser tests drive."""
     return _tool("chromium", "chromium")
+
+
+@pytest.fixture(scope="session")
+def referees() -> Path:
+    """The Python of the hidden environment that holds independent programs with heavy dependencies."""
+    try:
+        return bootstrap.environment("referees", Path(__file__).parent / "referees.lock")
+    except bootstrap.MissingToolError as error:
+        _missing(str(error))

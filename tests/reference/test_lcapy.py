@@ -13,7 +13,6 @@ from pathlib import Path
 
 import pytest
 
-import bootstrap
 from strayline.network import Branch, Network
 from strayline.solve import solve
 
@@ -106,9 +105,8 @@ def ours(name: str) -> Network:
 
 
 @pytest.fixture(scope="module")
-def symbolic() -> dict[str, dict[str, dict[str, object]]]:
+def symbolic(referees: Path) -> dict[str, dict[str, dict[str, object]]]:
     """What lcapy says of every circuit, in one child."""
-    python = bootstrap.environment("referees", HERE.parent / "referees.lock")
     asked = [
         {
             "netlist": "\n".join(f"{line} s {{{line.split()[0]}}}" if line[0] == "V" else line for line in netlist.split("\n")),
@@ -119,7 +117,7 @@ def symbolic() -> dict[str, dict[str, dict[str, object]]]:
         for netlist, values, wanted in CIRCUITS.values()
     ]
     done = subprocess.run(
-        [python, HERE / "lcapy_referee.py"], input=json.dumps(asked), capture_output=True, text=True, check=False, timeout=170
+        [referees, HERE / "lcapy_referee.py"], input=json.dumps(asked), capture_output=True, text=True, check=False, timeout=170
     )
     assert done.returncode == 0, done.stderr
     return dict(zip(CIRCUITS, json.loads(done.stdout), strict=True))
