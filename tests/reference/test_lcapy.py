@@ -124,6 +124,7 @@ def symbolic(referees: Path) -> dict[str, dict[str, dict[str, object]]]:
 
 
 @pytest.mark.full
+@pytest.mark.timeout(900)  # the first of them may have to make the environment
 @pytest.mark.parametrize("name", CIRCUITS)
 def test_symbols_and_numbers_agree(name: str, symbolic: dict[str, dict[str, dict[str, object]]]) -> None:
     """The formula is proved from the circuit by symbols, and our numeric solve of that circuit gives its value to 1e-12 A."""
